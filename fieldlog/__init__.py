@@ -1,0 +1,1 @@
+"""Field inspection and test log for water-based fire protection systems."""
