@@ -1,1 +1,1 @@
-"""One module a kind of entry: its type, units, limits, cautions, labels; and the reading of entries into histories."""
+"""One module a kind of entry: type, units, limits, cautions, labels; and entries read into histories."""
