@@ -6,6 +6,7 @@ exact conversion is a fraction, so that a comparison of two readings in differen
 
 from __future__ import annotations
 
+import math
 from collections.abc import Mapping
 from fractions import Fraction
 from typing import Annotated, ClassVar, Literal
@@ -23,6 +24,11 @@ DecimalText = Annotated[
 ]
 
 
+def _last_digit(text: str) -> Fraction:
+    decimals = len(text.partition(".")[2])
+    return Fraction(1, int(10**decimals))
+
+
 class Quantity(msgspec.Struct, frozen=True, forbid_unknown_fields=True, omit_defaults=True, kw_only=True):
     """A value as entered, with its unit; each subclass names its units and their exact size."""
 
@@ -38,8 +44,7 @@ class Quantity(msgspec.Struct, frozen=True, forbid_unknown_fields=True, omit_def
 
     def resolution(self) -> Fraction:
         """Return the size of the last digit entered, in the inside unit."""
-        decimals = len(self.value.partition(".")[2])
-        return self.sizes[self.unit] / 10**decimals
+        return self.sizes[self.unit] * _last_digit(self.value)
 
 
 class Pressure(Quantity, frozen=True, kw_only=True):
@@ -146,12 +151,12 @@ class Discharge(Quantity, frozen=True, kw_only=True):
 
     def resolution(self) -> Fraction:
         """Return the size of the last digit entered, in gpm/psi^0.5."""
-        return Fraction(self._size()) / 10 ** len(self.value.partition(".")[2])
+        return Fraction(self._size()) * _last_digit(self.value)
 
     def _size(self) -> float:
         if self.unit == "gpm/psi^0.5":
             return 1.0
-        return float(Flow.sizes["L/min"]) / float(Pressure.sizes["bar"]) ** 0.5
+        return float(Flow.sizes["L/min"]) / math.sqrt(Pressure.sizes["bar"])
 
     @property
     def k(self) -> float:
@@ -174,7 +179,7 @@ class Temperature(Quantity, frozen=True, kw_only=True):
     def resolution(self) -> Fraction:
         """Return the size of the last digit entered, in degrees Fahrenheit."""
         size = Fraction(1) if self.unit == "F" else Fraction(9, 5)
-        return size / 10 ** len(self.value.partition(".")[2])
+        return size * _last_digit(self.value)
 
     @property
     def fahrenheit(self) -> float:
