@@ -93,11 +93,12 @@ class ScheduleRange(_Tagged, frozen=True, kw_only=True):
 
 
 class PressureAbove(_Tagged, frozen=True, kw_only=True):
-    """A pressure must stand so far above another one."""
+    """A pressure must stand so far above another one, and not under `at_least` where that is stated."""
 
     quantity: str
     above: str
     by: Pressure
+    at_least: Pressure | None = None
 
 
 class TimeLimit(_Tagged, frozen=True, kw_only=True):
@@ -216,6 +217,6 @@ class ValidFor(_Tagged, frozen=True, kw_only=True):
 
 Criterion = (
     RelativeToBaseline | AbsolutePoints | AbsoluteRange | TemperatureRange | ScheduleRange | PressureAbove
-    | TimeLimit | RelativeTimeIncrease | CompareAccuracy | DurationAtLeast | RateOfLoss | StateMustBe | PresentAndLegible
-    | CurveAtLeast | Ratio | Sample | Instrument | MarginRule | ValidFor
+    | TimeLimit | RelativeTimeIncrease | CompareAccuracy | DurationAtLeast | RateOfLoss | StateMustBe
+    | PresentAndLegible | CurveAtLeast | Ratio | Sample | Instrument | MarginRule | ValidFor
 )  # fmt: skip

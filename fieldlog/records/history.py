@@ -207,6 +207,18 @@ class ForwardFlowTest:
 
 
 @dataclass(frozen=True, slots=True)
+class ValveStatusTest:
+    """A valve status test: flow seen at an outlet after a valve was reopened; never evidence on capacity."""
+
+    entry: int
+    performed_on: date
+    valve: str
+    shut_at: str | None = None  # timestamps with offset
+    opened_at: str | None = None
+    flow_seen: bool | None = None
+
+
+@dataclass(frozen=True, slots=True)
 class Design:
     """The hydraulic design record in force: demand at the base of riser as recorded."""
 
@@ -273,6 +285,7 @@ class System:
     gauge_readings: tuple[GaugeReading, ...] = ()
     alarm_tests: tuple[AlarmTest, ...] = ()
     forward_flow_tests: tuple[ForwardFlowTest, ...] = ()
+    valve_status_tests: tuple[ValveStatusTest, ...] = ()
     repairs: tuple[Repair, ...] = ()
     impairments: tuple[OpenImpairment, ...] = ()
 

@@ -36,6 +36,7 @@ SatisfiedBy = Literal[
     "main_drain_test", "gauge_reading", "inspectors_test", "flow_test", "forward_flow_test", "valve_status_test",
     "gauge_comparison",
 ]  # fmt: skip
+FeedDevice = Literal["backflow_preventer", "pressure_reducing_valve"]
 TriggerEvent = Literal[
     "valve reopened", "repair", "feed changed", "drain changed", "extension", "impairment ended"
 ]
@@ -53,7 +54,8 @@ class AppliesWhen(_Part, frozen=True, kw_only=True):
 
     system_types: tuple[SystemType, ...] = ()
     supply_kinds: tuple[Literal["public_main", "gravity_tank", "pressure_tank", "fire_pump", "parallel"], ...] = ()
-    sole_feed_through: tuple[Literal["backflow_preventer", "pressure_reducing_valve"], ...] = ()  # any of these
+    feed_through: tuple[FeedDevice, ...] = ()  # any of these stands in a feed
+    sole_feed_through: tuple[FeedDevice, ...] = ()  # any of these stands in the only feed
     alarms: tuple[str, ...] = ()
     gauge_sides: tuple[Literal["supply", "system", "air"], ...] = ()
     occupancies: tuple[str, ...] = ()
