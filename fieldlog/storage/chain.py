@@ -1,0 +1,200 @@
+"""The chain that ties each entry to the one before, and the walk that finds the first entry that does not fit."""
+
+from __future__ import annotations
+
+import functools
+import hashlib
+from collections.abc import Callable, Iterator
+from contextlib import contextmanager
+from dataclasses import dataclass
+from typing import Any
+
+import msgspec
+
+from fieldlog.canonical import sha256_hex
+from fieldlog.storage.columns import Columns, columns_of
+from fieldlog.storage.connection import Connection, at_the_edge, sqlite3
+from fieldlog.storage.current import CurrentRow, replay
+
+FIRST_LINK = "0" * 64  # stands for the link before the first entry
+
+Progress = Callable[[int, int], None]  # entries checked, of how many
+
+_PROGRESS_STEP = 10_000
+_GUARDS = ("entries_follow", "entries_not_changed", "entries_not_deleted")
+
+
+@dataclass(frozen=True, slots=True)
+class Fault:
+    """The first thing that does not fit, and the entry where it shows."""
+
+    number: int
+    uid: str  # empty where no entry of this number is there
+    what: str  # missing, text, sha256, link, a column's name, head, current, guard
+    message: str
+
+
+@dataclass(frozen=True, slots=True)
+class CheckResult:
+    """What a walk of the chain found; `head` is the link of the last entry that fits."""
+
+    checked: int
+    head: str
+    fault: Fault | None
+
+
+def link(number: int, received_at: str, previous: str, sha256: str) -> str:
+    """Return the link of an entry to the one before (DEVELOPERS.md "Canonical text, hash and link")."""
+    text = f"fieldlog-link-1\n{number}\n{received_at}\n{previous}\n{sha256}\n"
+    return hashlib.sha256(text.encode(errors="replace")).hexdigest()
+
+
+@at_the_edge
+def check(
+    connection: Connection, progress: Progress | None = None, expected_head: str | None = None
+) -> CheckResult:
+    """Walk the whole chain and return the first fault, if there is one.
+
+    Each text is hashed again, each link computed again, each column compared with its text, and `current`
+    compared with a replay. `expected_head` is a head known from elsewhere (a receipt, a report): entries cut off
+    the end, or a chain computed anew as a whole, show only against one.
+    """
+    with _snapshot(connection):
+        try:
+            return _checked(connection, progress or _no_progress, expected_head)
+        except sqlite3.OperationalError:
+            connection.text_factory = _lenient
+            return _checked(connection, progress or _no_progress, expected_head)
+
+
+def _checked(connection: Connection, progress: Progress, expected_head: str | None) -> CheckResult:
+    walk = _Walk(connection, expected_head)
+    fault = walk.fault(progress) or _fault_of_guards(connection) or _fault_of_current(connection)
+    return CheckResult(walk.number, walk.head, fault)
+
+
+def _no_progress(checked: int, entries: int) -> None:
+    """Say nothing."""
+
+
+@contextmanager
+def _snapshot(connection: Connection) -> Iterator[None]:
+    """Read one state of the database, whatever is written meanwhile."""
+    usual = connection.text_factory
+    connection.execute("savepoint checking")
+    try:
+        yield
+    finally:
+        connection.execute("release checking")
+        connection.text_factory = usual
+
+
+# A text that is no longer UTF-8 is to be named as changed, not to end the walk.
+_lenient = functools.partial(str, encoding="utf-8", errors="replace")
+
+_ROWS = (
+    f"select number, received_at, sha256, link, text, {', '.join(Columns._fields)} "  # noqa: S608
+    "from entries order by number"
+    "from entries order by number"
+)
+_UID = 5 + Columns._fields.index("uid")
+
+
+class _Walk:
+    """How far the chain holds."""
+
+    def __init__(self, connection: Connection, expected_head: str | None) -> None:
+        self.number = 0
+        self.head = FIRST_LINK
+        self._connection = connection
+        self._expected_head = expected_head
+
+    def fault(self, progress: Progress) -> Fault | None:
+        """Go forward to the end or the first fault."""
+        entries: int = self._connection.execute("select count(*) from entries").fetchone()[0]
+        is_expected_seen = self._expected_head in {None, FIRST_LINK}
+        for row in self._connection.execute(_ROWS):
+            if found := _fault_of_row(row, self.number + 1, self.head):
+                return found
+            self.number, self.head = row[0], row[3]
+            is_expected_seen = is_expected_seen or self.head == self._expected_head
+            if self.number % _PROGRESS_STEP == 0:
+                progress(self.number, entries)
+        progress(self.number, entries)
+        return None if is_expected_seen else _unknown_head(self.number, self._expected_head)
+
+
+def _unknown_head(number: int, expected_head: str | None) -> Fault:
+    message = (
+        f"the chain holds through entry {number}, but no entry has the link {expected_head}: entries were cut off the "
+        "end, or the chain was computed anew, or the head is of another log"
+    )
+    return Fault(number + 1, "", "head", message)
+
+
+def _fault_of_row(row: tuple[Any, ...], expected: int, previous: str) -> Fault | None:
+    number, received_at, sha256, entry_link, text = row[:5]
+    if number != expected:
+        message = f"entry {expected} is not there; the next one is {number}"
+        return Fault(expected, "", "missing", message)
+    digest = sha256_hex(text)
+    if digest != sha256:
+        is_text = link(number, received_at, previous, sha256) == entry_link
+        return (
+            _fault(row, "text", "is not the one that was hashed") if is_text else _fault(row, "sha256", "is not")
+        )
+    if link(number, received_at, previous, digest) != entry_link:
+        return _fault(row, "link", "does not follow from number, time, hash and the link before")
+    try:
+        columns = columns_of(text)
+    except msgspec.MsgspecError:
+        return _fault(row, "text", "is not the JSON of an entry")
+    if row[5:] != columns:
+        name = next(name for name, has, says in zip(Columns._fields, row[5:], columns, strict=True) if has != says)
+        return _fault(row, name, "differs from the text")
+    return None
+
+
+def _fault(row: tuple[Any, ...], what: str, message: str) -> Fault:
+    number, uid = row[0], row[_UID]
+    return Fault(number, uid, what, f"entry {number} ({uid}): its {what} {message}")
+
+
+def _fault_of_guards(connection: Connection) -> Fault | None:
+    there = {name for (name,) in connection.execute("select name from sqlite_master where type = 'trigger'")}
+    for name in _GUARDS:
+        if name not in there:
+            return Fault(0, "", "guard", f"the trigger {name}, which keeps entries as they are, is not there")
+    return None
+
+
+def _fault_of_current(connection: Connection) -> Fault | None:
+    """Return the first subject whose row differs from what the entries say.
+
+    Both come in the order of `first`, but for the replayed rows of subjects with later versions, which come last:
+    what is found before its turn is set aside.
+    """
+    columns = ", ".join(CurrentRow._fields)
+    found = map(CurrentRow._make, connection.execute(f"select {columns} from current order by first"))  # noqa: S608
+    aside: dict[int, CurrentRow] = {}
+    faulty: list[CurrentRow] = []
+    for expected in replay(connection):
+        row = aside.pop(expected.first, None) or _row_of(found, expected.first, aside)
+        if row != expected:
+            faulty.append(expected)
+    faulty.extend((*aside.values(), *found))
+    if not faulty:
+        return None
+    row = min(faulty, key=lambda each: each.first)
+    message = f"the version in force of {row.subject} differs from what its entries say; run `fieldlog rebuild`"
+    return Fault(row.first, row.subject, "current", message)
+
+
+def _row_of(found: Iterator[CurrentRow], first: int, aside: dict[int, CurrentRow]) -> CurrentRow | None:
+    for row in found:
+        if row.first == first:
+            return row
+        aside[row.first] = row
+        if row.first > first:
+            break
+    return None

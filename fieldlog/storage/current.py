@@ -1,0 +1,102 @@
+"""Which version of a subject is in force: one rule, used when entries arrive and when the table is made anew."""
+
+from __future__ import annotations
+
+import json
+from collections.abc import Iterable, Iterator
+from typing import NamedTuple
+
+from fieldlog.storage.connection import Connection, at_the_edge, require_transaction
+
+
+class Version(NamedTuple):
+    """What the rule needs of an entry."""
+
+    subject: str
+    kind: str
+    site: str | None
+    system: str | None
+    performed_on: str | None
+    number: int
+    uid: str
+    based_on: str | None
+    withdrawn: int
+    device: str | None
+
+
+class CurrentRow(NamedTuple):
+    """A row of `current`; `first` is the number of the subject's first entry."""
+
+    first: int
+    subject: str
+    kind: str
+    site: str | None
+    system: str | None
+    performed_on: str | None
+    number: int
+    uid: str
+    forked: int
+    withdrawn: int
+
+
+def in_force_after(before: CurrentRow | None, version: Version) -> CurrentRow:
+    """Return what is in force once `version` has its number.
+
+    The first version is in force. A version based on the one in force replaces it. Any other is a fork: it is
+    kept, the one in force stays, and the subject is marked. The mark goes with the next version that is based on
+    the one in force and was not made on a tablet: it was composed where both versions could be seen. One made on
+    a tablet comes into force, but its maker may not have known of the fork, so the mark stays.
+    """
+    if before is None:
+        return CurrentRow(version.number, *version[:7], 0, version.withdrawn)
+    if version.based_on != before.uid:
+        return before._replace(forked=1)
+    forked = before.forked if version.device is not None else 0
+    return CurrentRow(before.first, *version[:7], forked, version.withdrawn)
+
+
+_COLUMNS = ", ".join(CurrentRow._fields)
+# A subject is its first entry's uid, so the index of uids finds the row.
+_ROWS_OF = (
+    f"select {_COLUMNS} from current where first in "  # noqa: S608
+    "(select number from entries where uid in (select value from json_each(?)))"
+)
+_UPSERT = (
+    f"insert into current ({_COLUMNS}) values (?, ?, ?, ?, ?, ?, ?, ?, ?, ?) "  # noqa: S608
+    "on conflict (first) do update set performed_on = excluded.performed_on, number = excluded.number, "
+    "uid = excluded.uid, forked = excluded.forked, withdrawn = excluded.withdrawn"
+)
+_VERSIONS = f"select {', '.join(Version._fields)} from entries order by number"  # noqa: S608
+
+
+def rows_of(connection: Connection, subjects: Iterable[str]) -> dict[str, CurrentRow]:
+    """Return the rows of these subjects, by subject."""
+    found = connection.execute(_ROWS_OF, (json.dumps(list(subjects)),))
+    return {row.subject: row for row in map(CurrentRow._make, found)}
+
+
+def write_rows(connection: Connection, rows: Iterable[CurrentRow]) -> None:
+    """Put the rows in place of those of the same subjects."""
+    connection.executemany(_UPSERT, rows)
+
+
+@at_the_edge
+def rebuild_current(connection: Connection) -> int:
+    """Make `current` anew from the entries and return its number of rows; inside a transaction."""
+    require_transaction(connection)
+    connection.execute("delete from current")
+    write_rows(connection, replay(connection))
+    rows: int = connection.execute("select count(*) from current").fetchone()[0]
+    return rows
+
+
+def replay(connection: Connection) -> Iterator[CurrentRow]:
+    """Yield every row that the entries give: by `first`, and at the end those of subjects with later versions."""
+    later = connection.execute("select distinct subject from entries where subject <> uid")
+    changed: dict[str, CurrentRow | None] = dict.fromkeys(subject for (subject,) in later)
+    for version in map(Version._make, connection.execute(_VERSIONS)):
+        if version.subject in changed:
+            changed[version.subject] = in_force_after(changed[version.subject], version)
+        else:
+            yield in_force_after(None, version)
+    yield from filter(None, changed.values())
