@@ -42,6 +42,7 @@ TriggerEvent = Literal[
 ]
 
 _MONTHS_OF_UNIT = {"month": 1, "year": 12}
+_DAYS_OF_UNIT = {"day": 1, "week": 7}
 _AnyCriterion = TypeVar("_AnyCriterion", bound=Criterion)
 
 
@@ -95,11 +96,18 @@ class Frequency(_Part, frozen=True, kw_only=True):
     season: Season | None = None
 
     def __post_init__(self) -> None:
-        """Refuse gaps without a unit and a smallest gap above the largest."""
+        """Refuse gaps without a unit, and an interval that is not within its gaps."""
         if (self.least is not None or self.most is not None) != (self.gap_unit is not None):
             raise ValueError("least or most and gap_unit come together")
-        if self.least is not None and self.most is not None and self.least > self.most:
-            raise ValueError(f"least {self.least} is above most {self.most}")
+        if self.gap_unit is None:
+            return
+        if (self.gap_unit == "month") != (self.unit in _MONTHS_OF_UNIT):
+            raise ValueError(
+                f"gaps in {self.gap_unit}s don't go with {self.unit}s; months with years, days with weeks"
+            )
+        interval = self.every * (_MONTHS_OF_UNIT | _DAYS_OF_UNIT)[self.unit]
+        if not (self.least or 0) <= interval <= (self.most or interval):
+            raise ValueError(f"the interval of {interval} {self.gap_unit}s is not within its gaps")
 
     def months(self) -> int | None:
         """Return the interval in months; None where it is counted in days or weeks."""
