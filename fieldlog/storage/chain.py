@@ -62,8 +62,11 @@ def check(
     with _snapshot(connection):
         try:
             return _checked(connection, progress or _no_progress, expected_head)
-        except sqlite3.OperationalError:
-            connection.text_factory = _lenient
+        except sqlite3.OperationalError as error:
+            if getattr(error, "sqlite_errorname", None):
+                raise
+            # An error of the reader, not of the library: a text is no longer UTF-8. It is to be named as changed.
+            connection.text_factory = functools.partial(str, encoding="utf-8", errors="replace")
             return _checked(connection, progress or _no_progress, expected_head)
 
 
@@ -89,12 +92,8 @@ def _snapshot(connection: Connection) -> Iterator[None]:
         connection.text_factory = usual
 
 
-# A text that is no longer UTF-8 is to be named as changed, not to end the walk.
-_lenient = functools.partial(str, encoding="utf-8", errors="replace")
-
 _ROWS = (
     f"select number, received_at, sha256, link, text, {', '.join(Columns._fields)} "  # noqa: S608
-    "from entries order by number"
     "from entries order by number"
 )
 _UID = 5 + Columns._fields.index("uid")
@@ -126,8 +125,8 @@ class _Walk:
 
 def _unknown_head(number: int, expected_head: str | None) -> Fault:
     message = (
-        f"the chain holds through entry {number}, but no entry has the link {expected_head}: entries were cut off the "
-        "end, or the chain was computed anew, or the head is of another log"
+        f"the chain holds through entry {number}, but no entry has the link {expected_head}: entries were cut off "
+        "the end, or the chain was computed anew, or the head is of another log"
     )
     return Fault(number + 1, "", "head", message)
 

@@ -6,7 +6,7 @@ from dataclasses import dataclass
 from typing import Literal
 
 from fieldlog.errors import ConflictError, NotFoundError
-from fieldlog.storage.connection import Connection, at_the_edge, sqlite3
+from fieldlog.storage.connection import Connection, at_the_edge
 
 Role = Literal["technician", "office", "owner"]
 
@@ -33,15 +33,12 @@ def add_login(connection: Connection, login: Login) -> None:
         If the name is taken, in whatever case of letters.
     """
     _require_subject(connection, login.person, "person")
-    try:
-        connection.execute(
-            "insert into people_logins (name, person, role, added_at) values (?, ?, ?, ?)",
-            (login.name, login.person, login.role, login.added_at),
-        )
-    except sqlite3.IntegrityError as error:
-        if error.sqlite_errorname != "SQLITE_CONSTRAINT_PRIMARYKEY":
-            raise
-        raise ConflictError(f"the log-in name {login.name} is taken; choose another", name=login.name) from error
+    if login_of(connection, login.name) is not None:
+        raise ConflictError(f"the log-in name {login.name} is taken; choose another", name=login.name)
+    connection.execute(
+        "insert into people_logins (name, person, role, added_at) values (?, ?, ?, ?)",
+        (login.name, login.person, login.role, login.added_at),
+    )
 
 
 @at_the_edge

@@ -6,7 +6,7 @@ from collections.abc import Iterable
 from dataclasses import astuple, dataclass
 
 from fieldlog.errors import ConflictError
-from fieldlog.storage.connection import Connection, at_the_edge, sqlite3
+from fieldlog.storage.connection import Connection, at_the_edge
 
 
 @dataclass(frozen=True, slots=True)
@@ -34,20 +34,20 @@ def add(connection: Connection, report: StoredReport) -> None:
     ConflictError
         If it, or this revision of its visit, is on file already.
     """
-    try:
-        connection.execute(
-            "insert into reports (sha256, visit, sign_off, revision, made_at, unsigned_sha256, size) "
-            "values (?, ?, ?, ?, ?, ?, ?)",
-            astuple(report),
-        )
-    except sqlite3.IntegrityError as error:
-        if error.sqlite_errorname not in {"SQLITE_CONSTRAINT_PRIMARYKEY", "SQLITE_CONSTRAINT_UNIQUE"}:
-            raise
+    if connection.execute(
+        "select 1 from reports where sha256 = ? or visit = ? and revision = ?",
+        (report.sha256, report.visit, report.revision),
+    ).fetchone():
         raise ConflictError(
             f"revision {report.revision} of the report on visit {report.visit} is there already; make the next",
             visit=report.visit,
             revision=report.revision,
-        ) from error
+        )
+    connection.execute(
+        "insert into reports (sha256, visit, sign_off, revision, made_at, unsigned_sha256, size) "
+        "values (?, ?, ?, ?, ?, ?, ?)",
+        astuple(report),
+    )
 
 
 @at_the_edge

@@ -1,4 +1,4 @@
-"""Statements as judged last, and the supplies that have to be judged again. Derived: all of it can be made anew."""
+"""Statements as judged last, and which supplies to judge again. Derived: all of it can be made anew."""
 
 from __future__ import annotations
 
@@ -12,6 +12,8 @@ from fieldlog.records.statement import SystemStatement
 from fieldlog.storage.connection import Connection, at_the_edge, require_transaction
 
 _statement_of = msgspec.json.Decoder(SystemStatement).decode
+_STATEMENT = "select statement from statements "
+_WORST_FIRST = "order by rank, system, profile"
 _NEWEST = "(select coalesce(max(number), 0) from entries)"
 
 
@@ -25,8 +27,8 @@ def put(
     """
     require_transaction(connection)
     connection.execute("delete from statements where supply = ?", (supply,))
-    # A system that has moved here from another supply leaves no statement behind there.
     connection.executemany(
+        # Replace: a system that has moved here leaves no statement behind with the supply it was on.
         "insert or replace into statements (system, profile, supply, site, rank, version, through_number, "
         "valid_until, statement) values (?, ?, ?, ?, ?, ?, ?, ?, ?)",
         [_row(supply, site, each) for each in statements],
@@ -45,35 +47,25 @@ def put(
 @at_the_edge
 def of_supply(connection: Connection, supply: str) -> list[SystemStatement]:
     """Return the statements on the systems of a supply, the most worrying first."""
-    return _all(
-        connection.execute(
-            "select statement from statements where supply = ? order by rank, system, profile", (supply,)
-        )
-    )
+    return _all(connection.execute(_STATEMENT + "where supply = ? " + _WORST_FIRST, (supply,)))
 
 
 @at_the_edge
 def of_site(connection: Connection, site: str) -> list[SystemStatement]:
     """Return the statements on the systems of a site, the most worrying first."""
-    return _all(
-        connection.execute(
-            "select statement from statements where site = ? order by rank, system, profile", (site,)
-        )
-    )
+    return _all(connection.execute(_STATEMENT + "where site = ? " + _WORST_FIRST, (site,)))
 
 
 @at_the_edge
 def of_system(connection: Connection, system: str) -> list[SystemStatement]:
-    """Return the statements on a system, one for each rule profile."""
-    return _all(
-        connection.execute("select statement from statements where system = ? order by profile", (system,))
-    )
+    """Return the statements on a system, one for each rule profile, the most worrying first."""
+    return _all(connection.execute(_STATEMENT + "where system = ? " + _WORST_FIRST, (system,)))
 
 
 @at_the_edge
 def every(connection: Connection) -> list[SystemStatement]:
     """Return all statements, the most worrying first."""
-    return _all(connection.execute("select statement from statements order by rank, system, profile"))
+    return _all(connection.execute(_STATEMENT + _WORST_FIRST))
 
 
 @at_the_edge
@@ -103,7 +95,7 @@ def due(connection: Connection, today: date) -> list[str]:
     """Return the supplies to be judged: marked, never judged, or changed by time alone."""
     found = connection.execute(
         "select subject from current where kind = 'supply' and ("
-        "subject in (select supply from dirty_supplies) or "
+        "subject in (select supply from dirty_supplies) or withdrawn = 0 and "
         "subject not in (select supply from judged_supplies where valid_until is null or valid_until > ?)"
         ") order by first",
         (today.isoformat(),),
