@@ -135,6 +135,8 @@ def _merged(folder: Traversable, name: str, seen: tuple[str, ...]) -> Merged:
     if name in seen:
         raise ConfigError(f"rules file {name}.toml is based on itself through {', '.join(seen)}; mend based_on")
     file = _read(folder, name, CatalogueFile)
+    if file.catalogue.id != name:
+        raise ConfigError(f"rules file {name}.toml calls itself {file.catalogue.id!r}; name both alike")
     own_rows = _by_id(file.row, name)
     if file.catalogue.based_on is None:
         return Merged(header=file.catalogue, rows=own_rows, cells=file.cell, intervals=file.intervals)
