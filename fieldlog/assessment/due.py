@@ -50,7 +50,7 @@ class DueItem:
 
 @dataclass(frozen=True, slots=True)
 class DueList:
-    """What one profile asks of one supply: `items` worst first, and the rows that no kind of entry records."""
+    """What one profile asks of one supply: `items` worst first; `untracked` rows no entry records, or not wholly."""
 
     profile: str  # uid of the profile's version
     standard: str

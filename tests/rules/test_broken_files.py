@@ -37,7 +37,7 @@ edition = "2031"
 based_on = "shared"
 
 [intervals]
-quarter = { every = 3, unit = "month", anchor = "baseline", least = 2, most = 4, gap_unit = "month", mark = "read" }
+quarter = {every = 3, unit = "month", anchor = "baseline", least = 2, most = 4, gap_unit = "month", mark = "read" }
 
 [cell]
 "valve.look" = { every = "quarter", mark = "read", source = "invented", clause = "Invented 7 (2031) 5.6" }
