@@ -9,7 +9,7 @@ from __future__ import annotations
 import math
 from collections.abc import Mapping
 from fractions import Fraction
-from typing import Annotated, ClassVar, Literal
+from typing import Annotated, ClassVar, Literal, get_args, get_type_hints
 
 import msgspec
 
@@ -37,6 +37,11 @@ class Quantity(msgspec.Struct, frozen=True, forbid_unknown_fields=True, omit_def
 
     noun: ClassVar[str] = "quantity"
     sizes: ClassVar[Mapping[str, Fraction]] = {}
+
+    @classmethod
+    def units(cls) -> tuple[str, ...]:
+        """Return the units this quantity may be entered in."""
+        return get_args(get_type_hints(cls)["unit"])
 
     def exact(self) -> Fraction:
         """Return the exact value in the inside unit of this quantity."""

@@ -8,6 +8,7 @@ from __future__ import annotations
 import msgspec
 
 from fieldlog.errors import InputError
+from fieldlog.procedures.procedure import Problem, Procedure
 from fieldlog.records.rules import ProfileValues, Rule, RuleProfile
 from fieldlog.rules.row_fields import with_field
 
@@ -52,3 +53,14 @@ def _require_in_row(rule: Rule | None, path: str, value: object, where: str) -> 
         raise InputError(
             f"{where}: row {rule.id} does not hold this value at {path}; resolve it again", field=where
         )
+
+
+def _problems(body: RuleProfileBody) -> list[Problem]:
+    try:
+        check_rule_profile(body)
+    except InputError as error:
+        return [Problem(error.field, error.message)]
+    return []
+
+
+PROCEDURE = Procedure("rule_profile", "Rule profile", RuleProfileBody, frozenset({"office"}), check=_problems)

@@ -1,0 +1,161 @@
+"""Bodies from JSON and to what is made of their types: fields with labels, report rows, columns, JSON schema."""
+
+from __future__ import annotations
+
+import types
+from collections.abc import Callable, Iterator, Mapping
+from dataclasses import dataclass
+from datetime import date
+from typing import Annotated, Any, Literal, Union, get_args, get_origin, get_type_hints
+
+import msgspec
+
+from fieldlog.errors import InputError
+from fieldlog.procedures.catalogue import PROCEDURES
+from fieldlog.procedures.envelope import shape_error
+from fieldlog.procedures.procedure import Problem
+from fieldlog.units import Quantity
+
+
+@dataclass(frozen=True, slots=True)
+class Field:
+    """One field of a body type, as a form, a column or a report row needs it."""
+
+    name: str
+    label: str
+    hint: str
+    type: Any
+    is_required: bool
+    choices: tuple[str, ...] = ()
+
+
+@dataclass(frozen=True, slots=True)
+class Row:
+    """One line of a report: label, value as entered, and a note beside it."""
+
+    label: str
+    value: str
+    note: str = ""
+
+
+def decode_body(kind: str, body: Mapping[str, Any]) -> msgspec.Struct:
+    """Return the typed body of a kind.
+
+    Raises
+    ------
+    InputError
+        If a field is unknown, of the wrong type, outside its limits, or at odds with another; names it and the
+        mend.
+    """
+    procedure = PROCEDURES[kind]
+    try:
+        typed = msgspec.convert(body, procedure.body)
+    except msgspec.ValidationError as error:
+        refused = shape_error(error)
+        raise InputError(f"body.{refused.message}", field=_inside(refused.field)) from error
+    problems = procedure.check(typed)
+    if problems:
+        raise _refusal(problems)
+    return typed
+
+
+def plain_body(body: msgspec.Struct) -> dict[str, Any]:
+    """Return the body as plain JSON values, absent ones left out."""
+    plain: dict[str, Any] = msgspec.to_builtins(body)
+    return plain
+
+
+def fields(body_type: type[msgspec.Struct]) -> list[Field]:
+    """Return the fields of a body type in the order of the work."""
+    hints = get_type_hints(body_type, include_extras=True)
+    return [_field(info, hints[info.name]) for info in msgspec.structs.fields(body_type)]
+
+
+def rows(body: msgspec.Struct, names: Callable[[str], str] = lambda uid: uid) -> list[Row]:
+    """Return what was entered as report rows; `names` tells by which name a uid goes."""
+    return list(_rows(body, names))
+
+
+def json_schema(kind: str) -> dict[str, Any]:
+    """Return the JSON schema of a kind's body."""
+    return msgspec.json.schema(PROCEDURES[kind].body)
+
+
+def _inside(field: str) -> str:
+    return f"body.{field}" if field else "body"
+
+
+def _refusal(problems: list[Problem]) -> InputError:
+    first = problems[0]
+    said = "; ".join(f"{problem.field}: {problem.message}" for problem in problems)
+    return InputError(said, field=f"body.{first.field}")
+
+
+def _field(info: msgspec.structs.FieldInfo, hint: Any) -> Field:  # noqa: ANN401  a type annotation of any shape
+    metas, bare = _metas(hint)
+    title = next((meta.title for meta in metas if meta.title), info.name.replace("_", " "))
+    described = next((meta.description for meta in metas if meta.description), "")
+    return Field(info.name, title, described, bare, info.required, _choices(bare))
+
+
+def _metas(hint: Any) -> tuple[list[msgspec.Meta], Any]:  # noqa: ANN401
+    if get_origin(hint) is Annotated:
+        inner, *found = get_args(hint)
+        deeper, bare = _metas(inner)
+        return [meta for meta in found if isinstance(meta, msgspec.Meta)] + deeper, bare
+    if get_origin(hint) in {Union, types.UnionType}:
+        options = [option for option in get_args(hint) if option is not type(None)]
+        if len(options) == 1:
+            return _metas(options[0])
+    return [], hint
+
+
+def _choices(bare: Any) -> tuple[str, ...]:  # noqa: ANN401
+    return get_args(bare) if get_origin(bare) is Literal else ()
+
+
+def _rows(body: msgspec.Struct, names: Callable[[str], str], before: str = "") -> Iterator[Row]:
+    for field in fields(type(body)):
+        value = getattr(body, field.name)
+        label = f"{before}{field.label}"
+        if value is None or value in ((), {}):
+            continue
+        if isinstance(value, tuple) and isinstance(value[0], msgspec.Struct):
+            for index, item in enumerate(value, start=1):
+                yield from _struct_rows(item, names, f"{label} {index}" if len(value) > 1 else label)
+        elif isinstance(value, msgspec.Struct):
+            yield from _struct_rows(value, names, label)
+        else:
+            yield Row(label, _text(value, names))
+
+
+def _struct_rows(value: msgspec.Struct, names: Callable[[str], str], label: str) -> Iterator[Row]:
+    if isinstance(value, Quantity):
+        yield Row(label, f"{value.value} {value.unit}", _reading_note(value, names))
+    else:
+        yield from _rows(value, names, f"{label}: ")
+
+
+def _reading_note(value: Quantity, names: Callable[[str], str]) -> str:
+    parts = []
+    names_of_reading = ("gauge", "low", "high", "pump_state")
+    gauge, low, high, pump_state = (getattr(value, name, None) for name in names_of_reading)
+    if gauge:
+        parts.append(f"gauge {names(gauge)}")
+    if low or high:
+        parts.append(f"needle {low or '?'} to {high or '?'}")
+    if pump_state:
+        parts.append(f"pump {pump_state}")
+    return ", ".join(parts)
+
+
+def _text(value: Any, names: Callable[[str], str]) -> str:  # noqa: ANN401  any plain value
+    if isinstance(value, bool):
+        return "yes" if value else "no"
+    if isinstance(value, date):
+        return value.isoformat()
+    if isinstance(value, tuple):
+        return ", ".join(_text(item, names) for item in value)
+    if isinstance(value, dict):
+        return ", ".join(f"{key} {item}" for key, item in value.items())
+    return names(str(value))

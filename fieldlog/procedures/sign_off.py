@@ -1,0 +1,68 @@
+"""Sign-off: who signed what; the entries are named by their hashes."""
+
+from __future__ import annotations
+
+import re
+from typing import Annotated, Literal
+
+from msgspec import Meta
+
+from fieldlog.procedures.envelope import Sha256, Uid
+from fieldlog.procedures.fields import Day, Line, ZonedTime
+from fieldlog.procedures.procedure import Body, Problem, Procedure
+
+_NUMBER = r"-?\d{1,6}(\.\d{1,4})?"
+_STROKES = re.compile(rf"([MLC](\s*{_NUMBER}([\s,]+|(?=[MLC-])|$))+)+")
+LONGEST_STROKES = 16 * 1024
+
+
+class Covered(Body, frozen=True, kw_only=True):
+    """One entry as it was signed."""
+
+    uid: Annotated[Uid, Meta(title="Entry")]
+    sha256: Annotated[Sha256, Meta(title="SHA-256")]
+
+
+class Signer(Body, frozen=True, kw_only=True):
+    """A person who signed, by drawing or, where that was impossible, by typing with the reason."""
+
+    role: Annotated[Literal["technician", "owner's representative", "witness"], Meta(title="Signs as")]
+    name: Annotated[Line, Meta(title="Name")]
+    person: Annotated[Uid, Meta(title="Person")] | None = None
+    licence: Annotated[Line, Meta(title="Licence")] | None = None
+    strokes: Annotated[str, Meta(title="Drawn signature", min_length=1, max_length=LONGEST_STROKES)] | None = None
+    typed: Annotated[Line, Meta(title="Typed name")] | None = None
+    typed_reason: Annotated[Line, Meta(title="Why typed")] | None = None
+
+
+class SignOff(Body, frozen=True, kw_only=True):
+    """What was signed, by whom, and the summary that was shown."""
+
+    covers: Annotated[tuple[Covered, ...], Meta(title="Covers", min_length=1, max_length=500)]
+    signers: Annotated[tuple[Signer, ...], Meta(title="Signers", min_length=1, max_length=6)]
+    summary: Annotated[str, Meta(title="Summary shown", min_length=1, max_length=20000)]
+    signed_on: Annotated[Day, Meta(title="Signed on")]
+    signed_at: Annotated[ZonedTime, Meta(title="Signed at")] | None = None
+
+
+def _problems(body: SignOff) -> list[Problem]:
+    found = []
+    for index, signer in enumerate(body.signers):
+        where = f"signers[{index}]"
+        if (signer.strokes is None) == (signer.typed is None):
+            found.append(
+                Problem(f"{where}.strokes", "give either a drawn signature or a typed name with the reason")
+            )
+        if signer.typed is not None and signer.typed_reason is None:
+            found.append(Problem(f"{where}.typed_reason", "say why the name is typed and not drawn"))
+        if signer.strokes is not None and _STROKES.fullmatch(signer.strokes) is None:
+            found.append(
+                Problem(f"{where}.strokes", "a drawn signature is path text of M, L and C with plain numbers")
+            )
+    return found
+
+
+PROCEDURE = Procedure(
+    "sign_off", "Sign-off", SignOff, frozenset({"technician", "office"}), frozenset({"site", "visit"}),
+    check=_problems,
+)  # fmt: skip
