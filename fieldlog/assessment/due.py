@@ -50,7 +50,7 @@ class DueItem:
 
 @dataclass(frozen=True, slots=True)
 class DueList:
-    """What one profile asks of one supply: `items` worst first; `untracked` rows no entry records, or not wholly."""
+    """What one profile asks of one supply: `items` worst first; `untracked`, rows that no entry records wholly."""
 
     profile: str  # uid of the profile's version
     standard: str

@@ -255,6 +255,21 @@ def test_one_test_serves_the_systems_of_a_header_from_2011_on() -> None:
     assert found == {("a", "b"): 57, ("c",): None}
 
 
+def test_a_header_without_tests_is_counted_from_its_first_system() -> None:
+    systems = (
+        wet("a", header="h", installed_on=date(2007, 4, 3)),
+        wet("b", header="h", installed_on=date(1999, 6, 5)),
+    )
+    assert only(history(*systems, profiles=(profile(),)), "main_drain.each").due == date(2000, 6, 5)
+
+
+def test_a_header_waits_for_no_fact_that_is_sure_of_one_of_its_systems() -> None:
+    rule = msgspec.structs.replace(LOOK, per="header", applies_when=AppliesWhen(heated=True))
+    systems = (wet("a", header="h"), wet("b", header="h", heated=True))
+    item = only(history(*systems, profiles=(local_profile(rule),)), "look")
+    assert (item.systems, item.unstated) == (("a", "b"), ())
+
+
 @pytest.mark.parametrize(
     ("supervised", "rules", "unstated"),
     [
@@ -419,6 +434,21 @@ def test_the_european_family_reads_every_gauge_at_most_seven_days_apart() -> Non
     system = wet(gauges=(gauge_with(),), gauge_readings=(read(date(2024, 9, 11), "g"),))
     item = only(history(system, profiles=(profile("european_insurers"),)), "gauge_reading.all")
     assert (item.due, item.latest, item.state) == (date(2024, 9, 18), date(2024, 9, 18), "not yet")
+
+
+def test_a_gauge_ends_on_the_day_the_next_begins() -> None:
+    old = gauge_with("old", ended_on=date(2018, 8, 8))
+    new = gauge_with("new", installed_on=date(2018, 8, 8))
+    held = history(wet(gauges=(old, new)), profiles=(profile(),))
+    assert [item.gauge for item in items(held, "gauge_comparison.five_years", date(2018, 8, 8))] == ["new"]
+    assert [item.gauge for item in items(held, "gauge_comparison.five_years", date(2018, 8, 7))] == ["old"]
+
+
+def test_a_reading_of_the_water_gauge_is_none_of_an_air_gauge_that_is_not_on_file() -> None:
+    water = Gauge(uid="water", entry=10, of="system", owner="dry", side="supply")
+    dry = wet("dry", type="dry", air_supervised=True, gauges=(water,), gauge_readings=(read(AS_OF, "water"),))
+    item = only(history(dry, profiles=(profile(),)), "gauge_reading.air_supervised")
+    assert (item.gauge, item.last_entry, item.unstated) == (None, None, ("gauge side",))
 
 
 # --- Alarms, trips, flow tests -----------------------------------------------------------------------------------

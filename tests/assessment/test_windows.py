@@ -141,6 +141,12 @@ def test_a_season_moves_what_is_counted_from_the_last_time() -> None:
     assert window(spring, date(2023, 5, 14), date(2024, 5, 2)) == ("-", "2024-05-14", "2024-05-14")
 
 
+def test_a_season_cuts_the_early_part_of_a_window_and_leaves_its_end() -> None:
+    spring = Season(name="spring", first_month=4, last_month=6)
+    yearly = Frequency(every=1, unit="year", anchor="last done", least=9, most=15, gap_unit="month", season=spring)
+    assert window(yearly, date(2024, 3, 20), date(2025, 2, 3)) == ("2024-12-20", "2025-04-01", "2025-06-20")
+
+
 def test_a_season_without_months_rests_nowhere() -> None:
     anytime = Frequency(every=1, unit="week", anchor="calendar", season=Season(name="cold weather"))
     assert window(anytime, date(2024, 7, 10), date(2024, 7, 11)) == window(

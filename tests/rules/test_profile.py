@@ -13,7 +13,7 @@ import pytest
 from fieldlog.canonical import canonical_text
 from fieldlog.errors import InputError
 from fieldlog.procedures.rule_profile import RuleProfileBody, check_rule_profile, rule_profile
-from fieldlog.records.criteria import MarginRule, TimeLimit
+from fieldlog.records.criteria import MarginRule, RelativeToBaseline, TimeLimit
 from fieldlog.records.rules import Approval, Frequency, Override, Rule, RuleProfile, is_required
 from fieldlog.rules.loader import Adoption, load, local_examples, resolve
 from fieldlog.rules.row_fields import field_of, with_field
@@ -252,6 +252,17 @@ def test_of_two_limits_the_strictest_counts() -> None:
     )
     profile = msgspec.structs.replace(profile_of(), rules=(*rows, stricter))
     assert profile.alarm_limit_s("device") == 75
+
+
+def test_the_fall_of_a_static_and_the_turn_of_a_test_gauge_are_other_limits() -> None:
+    of_static = RelativeToBaseline(percent="4", quantity="static", comparison=">=", against=("previous",))
+    ten = msgspec.structs.replace(EDITION_2017.rule("main_drain.ten_percent"), id="static", criteria=(of_static,))
+    five_years = EDITION_2017.rule("gauge_comparison.five_years")
+    yearly = Frequency(every=1, unit="year", anchor="last done")
+    test_gauge = msgspec.structs.replace(five_years, id="test_gauge", per="test gauge", frequency=yearly)
+    profile = msgspec.structs.replace(profile_of(), rules=(*EDITION_2017.rules, ten, test_gauge))
+    assert profile.reduction_percent() == Fraction(10)
+    assert profile.gauge_compare_months() == 60
 
 
 def test_a_profile_holds_from_its_first_to_its_last_day() -> None:
