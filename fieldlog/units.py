@@ -9,6 +9,7 @@ from __future__ import annotations
 import math
 from collections.abc import Mapping
 from fractions import Fraction
+from functools import cache
 from typing import Annotated, ClassVar, Literal, get_args, get_type_hints
 
 import msgspec
@@ -29,6 +30,11 @@ def _last_digit(text: str) -> Fraction:
     return Fraction(1, int(10**decimals))
 
 
+@cache
+def _units_of(quantity: type[Quantity]) -> tuple[str, ...]:
+    return get_args(get_type_hints(quantity)["unit"])
+
+
 class Quantity(msgspec.Struct, frozen=True, forbid_unknown_fields=True, omit_defaults=True, kw_only=True):
     """A value as entered, with its unit; each subclass names its units and their exact size."""
 
@@ -41,7 +47,7 @@ class Quantity(msgspec.Struct, frozen=True, forbid_unknown_fields=True, omit_def
     @classmethod
     def units(cls) -> tuple[str, ...]:
         """Return the units this quantity may be entered in."""
-        return get_args(get_type_hints(cls)["unit"])
+        return _units_of(cls)
 
     def exact(self) -> Fraction:
         """Return the exact value in the inside unit of this quantity."""
