@@ -111,6 +111,9 @@ def _comparisons(part: Part) -> Iterator[Done]:
 
 
 def _gauge_readings(part: Part, history: SupplyHistory) -> Iterator[Done]:
+    for reading in history.gauge_readings:
+        if part.gauge is not None and reading.reading.gauge == part.gauge.uid:
+            yield Done(reading.performed_on, reading.entry)
     for system in history.systems if part.gauge is not None else part.systems:
         for reading in system.gauge_readings:
             if _is_of(part.gauge, system, reading):

@@ -146,7 +146,12 @@ def _parts(rule: Rule, history: SupplyHistory, as_of: date) -> list[Part]:
 
 
 def _standing(history: SupplyHistory, as_of: date) -> list[System]:
-    return [system for system in history.systems if system.installed_on is None or system.installed_on <= as_of]
+    return [system for system in history.systems if _stands(system, as_of)]
+
+
+def _stands(system: System, as_of: date) -> bool:
+    has_left = system.on_supply_until is not None and system.on_supply_until <= as_of
+    return not has_left and (system.installed_on is None or system.installed_on <= as_of)
 
 
 def _system_part(rule: Rule, history: SupplyHistory, system: System) -> list[Part]:

@@ -95,6 +95,7 @@ class _Reader:
             systems=tuple(sorted(systems, key=lambda system: (system.name, system.uid))),
             flow_tests=tuple(sorted(flow_tests, key=_when)),
             supply_gauges=self._gauges("supply", self.supply.entry.subject),
+            gauge_readings=self._readings(self._gauges("supply", self.supply.entry.subject)),
             organisation_gauges=tuple(gauge for gauge in self.gauges if gauge.of == "organisation"),
             profiles=self._profiles(site),
             through_number=through_number,
@@ -121,6 +122,15 @@ class _Reader:
                 return bool(body.supply == self.supply.entry.subject)
         return False
 
+    def _left_on(self, system: Typed) -> date | None:
+        """Return from which day the system was on another supply; None while it is on this one."""
+        left = None
+        for since, body in self._spans(system):
+            if body.supply == self.supply.entry.subject:
+                return left
+            left = since
+        return left
+
     def _system(self, one: Typed) -> System:
         body: SystemBody = one.body
         uid = one.entry.subject
@@ -142,6 +152,7 @@ class _Reader:
             alarm=body.alarm,
             valves=tuple(valve.id for valve in body.valves),
             on_supply_since=body.on_supply_since,
+            on_supply_until=self._left_on(one),
             feed_changed_on=body.feed_changed_on,
             design=None if found is None else design(found.entry, found.body),
             gauges=self._gauges("system", uid),

@@ -278,6 +278,7 @@ class System:
     alarm: str | None = None  # kind of waterflow alarm
     valves: tuple[str, ...] = ()  # ids
     on_supply_since: date | None = None
+    on_supply_until: date | None = None  # from that day on another supply
     feed_changed_on: date | None = None
     design: Design | None = None
     gauges: tuple[Gauge, ...] = ()
@@ -316,5 +317,6 @@ class SupplyHistory:
     flow_tests: tuple[FlowTest, ...] = ()
     supply_gauges: tuple[Gauge, ...] = ()
     organisation_gauges: tuple[Gauge, ...] = ()
+    gauge_readings: tuple[GaugeReading, ...] = ()  # of the supply's gauges
     profiles: tuple[RuleProfile, ...] = ()
     through_number: int = 0

@@ -57,7 +57,7 @@ class AppliesWhen(_Part, frozen=True, kw_only=True):
     supply_kinds: tuple[Literal["public_main", "gravity_tank", "pressure_tank", "fire_pump", "parallel"], ...] = ()
     feed_through: tuple[FeedDevice, ...] = ()  # any of these stands in a feed
     sole_feed_through: tuple[FeedDevice, ...] = ()  # any of these stands in the only feed
-    alarms: tuple[str, ...] = ()
+    alarms: tuple[Literal["vane", "pressure switch", "water motor"], ...] = ()
     gauge_sides: tuple[Literal["supply", "system", "air"], ...] = ()
     occupancies: tuple[str, ...] = ()
     air_supervised: bool | None = None

@@ -169,6 +169,12 @@ def test_a_system_that_is_not_there_yet_asks_nothing() -> None:
     assert items(held, "main_drain.each") == []
 
 
+def test_a_system_asks_nothing_of_a_supply_it_has_left() -> None:
+    held = history(wet(on_supply_until=date(2024, 9, 17)), profiles=(profile(),))
+    assert items(held, "main_drain.each", date(2024, 9, 17)) == []
+    assert len(items(held, "main_drain.each", date(2024, 9, 16))) == 1
+
+
 def test_a_test_after_the_day_asked_is_not_known() -> None:
     held = history(
         wet(drain_tests=(drained(date(2023, 5, 6)), drained(date(2025, 5, 6), 61))), profiles=(profile(),)
@@ -297,7 +303,7 @@ def test_air_gauges_follow_supervision_and_name_it_where_it_is_not_on_record(
 @pytest.mark.parametrize(
     ("alarm", "rules"),
     [
-        ("mechanical", {"waterflow.mechanical": ()}),
+        ("water motor", {"waterflow.mechanical": ()}),
         ("vane", {"waterflow.vane_or_pressure": ()}),
         (None, {"waterflow.mechanical": ("alarm kind",), "waterflow.vane_or_pressure": ("alarm kind",)}),
     ],
@@ -392,10 +398,11 @@ def test_a_system_whose_gauge_is_not_on_file_is_named_all_the_same() -> None:
 def test_a_supply_gauge_serves_the_systems_without_one() -> None:
     header = Gauge(uid="header", entry=9, of="supply", owner="main", side="supply")
     held = history(
-        wet("a", gauge_readings=(read(date(2024, 8, 2), "header"),)),
+        wet("a"),
         wet("b"),
         profiles=(profile(),),
         supply_gauges=(header,),
+        gauge_readings=(read(date(2024, 8, 2), "header"), read(date(2024, 9, 2), "another", 79)),
     )
     item = only(held, "gauge_reading.wet")
     assert (item.gauge, item.systems, item.last_entry) == ("header", ("a", "b"), 71)
