@@ -150,8 +150,9 @@ def _standing(history: SupplyHistory, as_of: date) -> list[System]:
 
 
 def _stands(system: System, as_of: date) -> bool:
-    has_left = system.on_supply_until is not None and system.on_supply_until <= as_of
-    return not has_left and (system.installed_on is None or system.installed_on <= as_of)
+    if system.on_supply_until is not None:
+        return as_of < system.on_supply_until
+    return all(day is None or day <= as_of for day in (system.installed_on, system.on_supply_since))
 
 
 def _system_part(rule: Rule, history: SupplyHistory, system: System) -> list[Part]:

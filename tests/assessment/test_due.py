@@ -169,6 +169,12 @@ def test_a_system_that_is_not_there_yet_asks_nothing() -> None:
     assert items(held, "main_drain.each") == []
 
 
+def test_a_system_asks_nothing_of_a_supply_it_is_not_on_yet() -> None:
+    held = history(wet(on_supply_since=date(2024, 9, 17)), profiles=(profile(),))
+    assert items(held, "main_drain.each", date(2024, 9, 16)) == []
+    assert len(items(held, "main_drain.each", date(2024, 9, 17))) == 1
+
+
 def test_a_system_asks_nothing_of_a_supply_it_has_left() -> None:
     held = history(wet(on_supply_until=date(2024, 9, 17)), profiles=(profile(),))
     assert items(held, "main_drain.each", date(2024, 9, 17)) == []
