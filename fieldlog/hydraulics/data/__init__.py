@@ -1,0 +1,1 @@
+"""Tables of pipe, fittings and outlets, each with its source."""
