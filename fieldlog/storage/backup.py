@@ -8,7 +8,7 @@ from contextlib import closing, contextmanager
 from dataclasses import dataclass
 from pathlib import Path
 
-from fieldlog.errors import BrokenLogError, ConflictError, NotFoundError, StorageError
+from fieldlog.errors import BrokenLogError, ConflictError, NotFoundError, StorageError, StorageFullError
 from fieldlog.storage.chain import CheckResult, Progress, check
 from fieldlog.storage.connection import Connection, at_the_edge, connect, connect_read_only, sqlite3
 
@@ -98,7 +98,12 @@ def _copy(reader: Connection, path: Path) -> None:
     with closing(sqlite3.connect(path, isolation_level=None)) as writer:
         # In one step: a copy by steps starts again whenever another connection writes, and beside a busy
         # writer never ends.
-        reader.backup(writer, pages=-1)
+        try:
+            reader.backup(writer, pages=-1)
+        except sqlite3.OperationalError as error:
+            # Unlike a statement's, this error bears no name of SQLite's, so its text has to do.
+            kind = StorageFullError if "full" in str(error) else StorageError
+            raise kind(f"copying to {path}: {error}; check room and rights there, then try again") from error
         # A write-ahead log needs files beside it; a backup is one file and can be read from a read-only medium.
         writer.execute("pragma journal_mode = delete")
 

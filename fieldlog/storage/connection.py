@@ -114,7 +114,7 @@ def _raise_as_ours(error: sqlite3.Error) -> NoReturn:
 
 
 @at_the_edge
-def connect(path: Path, *, busy_seconds: float = BUSY_SECONDS) -> Connection:
+def connect(path: Path, *, busy_seconds: float | None = None) -> Connection:
     """Return a connection to an existing fieldlog database of the present schema.
 
     Raises
@@ -138,14 +138,13 @@ def connect(path: Path, *, busy_seconds: float = BUSY_SECONDS) -> Connection:
 
 
 @at_the_edge
-def connect_unmigrated(path: Path, *, create: bool = False, busy_seconds: float = BUSY_SECONDS) -> Connection:
+def connect_unmigrated(path: Path, *, create: bool = False, busy_seconds: float | None = None) -> Connection:
     """Return a connection to a fieldlog database of any schema up to ours; with `create`, an empty one is made."""
     if not path.is_file():
         if not create:
             raise NotFoundError(f"{path}: there is no database; run `fieldlog init`, or set FIELDLOG_INSTANCE")
         _make_empty(path)
-    connection: Connection = sqlite3.connect(path, timeout=busy_seconds, isolation_level=None, factory=Connection)
-    connection.path, connection.busy_seconds = path, busy_seconds
+    connection = _opened(path, busy_seconds, mode="rw")
     try:
         # Before any setting: the journal mode is kept in the file, and a foreign file is left as it was.
         _require_ours(connection, may_be_empty=create)
@@ -157,7 +156,7 @@ def connect_unmigrated(path: Path, *, create: bool = False, busy_seconds: float 
 
 
 @at_the_edge
-def connect_read_only(path: Path) -> Connection:
+def connect_read_only(path: Path, *, busy_seconds: float | None = None) -> Connection:
     """Return a connection that reads a fieldlog database of the present schema and changes no byte of it.
 
     Raises
@@ -171,10 +170,7 @@ def connect_read_only(path: Path) -> Connection:
     """
     if not path.is_file():
         raise NotFoundError(f"{path}: there is no such file; check the path")
-    connection: Connection = sqlite3.connect(
-        f"{path.absolute().as_uri()}?mode=ro", uri=True, isolation_level=None, factory=Connection
-    )
-    connection.path, connection.busy_seconds = path, BUSY_SECONDS
+    connection = _opened(path, busy_seconds, mode="ro")
     try:
         _require_ours(connection, may_be_empty=False)
         _require_present_schema(connection)
@@ -205,6 +201,19 @@ def _require_ours(connection: Connection, *, may_be_empty: bool) -> None:
             "fieldlog",
             schema=version,
         )
+
+
+def _opened(path: Path, busy_seconds: float | None, *, mode: str) -> Connection:
+    seconds = BUSY_SECONDS if busy_seconds is None else busy_seconds
+    connection: Connection = sqlite3.connect(
+        f"{path.absolute().as_uri()}?mode={mode}",
+        timeout=seconds,
+        isolation_level=None,
+        uri=True,
+        factory=Connection,
+    )
+    connection.path, connection.busy_seconds = path, seconds
+    return connection
 
 
 def _make_empty(path: Path) -> None:

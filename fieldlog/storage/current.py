@@ -6,22 +6,8 @@ import json
 from collections.abc import Iterable, Iterator
 from typing import NamedTuple
 
+from fieldlog.storage.columns import Columns
 from fieldlog.storage.connection import Connection, at_the_edge, require_transaction
-
-
-class Version(NamedTuple):
-    """What the rule needs of an entry."""
-
-    subject: str
-    kind: str
-    site: str | None
-    system: str | None
-    performed_on: str | None
-    number: int
-    uid: str
-    based_on: str | None
-    withdrawn: int
-    device: str | None
 
 
 class CurrentRow(NamedTuple):
@@ -39,7 +25,7 @@ class CurrentRow(NamedTuple):
     withdrawn: int
 
 
-def in_force_after(before: CurrentRow | None, version: Version) -> CurrentRow:
+def in_force_after(before: CurrentRow | None, number: int, version: Columns) -> CurrentRow:
     """Return what is in force once `version` has its number.
 
     The first version is in force. A version based on the one in force replaces it. Any other is a fork: it is
@@ -48,11 +34,17 @@ def in_force_after(before: CurrentRow | None, version: Version) -> CurrentRow:
     a tablet comes into force, but its maker may not have known of the fork, so the mark stays.
     """
     if before is None:
-        return CurrentRow(version.number, *version[:7], 0, version.withdrawn)
+        return _in_force(number, number, version, forked=0)
     if version.based_on != before.uid:
         return before._replace(forked=1)
-    forked = before.forked if version.device is not None else 0
-    return CurrentRow(before.first, *version[:7], forked, version.withdrawn)
+    return _in_force(before.first, number, version, forked=before.forked if version.device is not None else 0)
+
+
+def _in_force(first: int, number: int, version: Columns, forked: int) -> CurrentRow:
+    return CurrentRow(
+        first, version.subject, version.kind, version.site, version.system, version.performed_on, number,
+        version.uid, forked, version.withdrawn,
+    )  # fmt: skip
 
 
 _COLUMNS = ", ".join(CurrentRow._fields)
@@ -66,7 +58,7 @@ _UPSERT = (
     "on conflict (first) do update set performed_on = excluded.performed_on, number = excluded.number, "
     "uid = excluded.uid, forked = excluded.forked, withdrawn = excluded.withdrawn"
 )
-_VERSIONS = f"select {', '.join(Version._fields)} from entries order by number"  # noqa: S608
+_VERSIONS = f"select {', '.join(Columns._fields)}, number from entries order by number"  # noqa: S608
 
 
 def rows_of(connection: Connection, subjects: Iterable[str]) -> dict[str, CurrentRow]:
@@ -94,9 +86,10 @@ def replay(connection: Connection) -> Iterator[CurrentRow]:
     """Yield every row that the entries give: by `first`, and at the end those of subjects with later versions."""
     later = connection.execute("select distinct subject from entries where subject <> uid")
     changed: dict[str, CurrentRow | None] = dict.fromkeys(subject for (subject,) in later)
-    for version in map(Version._make, connection.execute(_VERSIONS)):
+    for *columns, number in connection.execute(_VERSIONS):
+        version = Columns._make(columns)
         if version.subject in changed:
-            changed[version.subject] = in_force_after(changed[version.subject], version)
+            changed[version.subject] = in_force_after(changed[version.subject], number, version)
         else:
-            yield in_force_after(None, version)
+            yield in_force_after(None, number, version)
     yield from filter(None, changed.values())

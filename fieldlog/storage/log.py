@@ -14,7 +14,7 @@ from fieldlog.storage import refusals, waiting
 from fieldlog.storage.chain import FIRST_LINK, link
 from fieldlog.storage.columns import Columns, columns_of, site_of
 from fieldlog.storage.connection import Connection, at_the_edge, require_transaction
-from fieldlog.storage.current import CurrentRow, Version, in_force_after, rows_of, write_rows
+from fieldlog.storage.current import CurrentRow, in_force_after, rows_of, write_rows
 from fieldlog.storage.refusals import RefusedText, refused_text
 from fieldlog.storage.waiting import WaitingText
 
@@ -28,8 +28,7 @@ class Head:
     received_at: str
 
 
-@dataclass(frozen=True, slots=True)
-class Added:
+class Added(NamedTuple):
     """An entry that got its number."""
 
     envelope: Envelope
@@ -71,7 +70,7 @@ def append(
     pending = batch
     while pending:
         arrived = step.take(pending)
-        pending = [_as_text(each) for each in waiting.release(connection, arrived)] if arrived else []
+        pending = step.released(arrived)
     return Appended(step.answer(batch), tuple(step.added))
 
 
@@ -111,10 +110,13 @@ class _Step:
         newest = head(connection)
         self._number, self._link = newest.number, newest.link
         self._on_file: dict[str, tuple[str, Receipt]] = {}  # by uid: subject, receipt
+        self._some_wait = not waiting.is_empty(connection)
         self._digest_waiting: dict[str, str] = {}  # by uid
         self._rows: dict[str, CurrentRow] = {}  # by subject
         self._outcomes: dict[tuple[str, str], Receipt | Refusal | _Waits] = {}  # by uid and digest
         self._repeated: list[str] = []
+        # Site, system and visit found to fit together: most entries of a batch name the same ones.
+        self._sound_places: set[tuple[str | None, str | None, str | None]] = set()
 
     def take(self, texts: Sequence[_Text]) -> list[str]:
         """Decide on each text, write what follows, and return the uids that were added."""
@@ -140,6 +142,12 @@ class _Step:
         self._write(entries, changed.values(), refused, waits)
         return arrived
 
+    def released(self, arrived: Sequence[str]) -> list[_Text]:
+        """Return the texts that waited for what has arrived, to be decided on next."""
+        if not (arrived and self._some_wait):
+            return []
+        return [_as_text(each) for each in waiting.release(self._connection, arrived)]
+
     def answer(self, batch: Sequence[_Text]) -> IntakeResult:
         """Return what became of each text of the batch, in its order."""
         outcomes = [(text.envelope.uid, self._outcomes[text.envelope.uid, text.sha256]) for text in batch]
@@ -160,11 +168,17 @@ class _Step:
         )
         for uid, number, sha256, entry_link, subject in found:
             self._on_file[uid] = (subject, Receipt(uid, number, sha256, entry_link))
-        self._digest_waiting = waiting.digests_of(self._connection, uids)
+        if self._some_wait:
+            self._digest_waiting = waiting.digests_of(self._connection, uids)
         named = {
             uid
             for envelope in envelopes
-            for uid in (envelope.subject, envelope.site, envelope.system, envelope.visit)
+            for uid in (
+                envelope.subject if envelope.based_on is not None else None,
+                envelope.site,
+                envelope.system,
+                envelope.visit,
+            )
             if uid is not None
         }
         self._rows.update(rows_of(self._connection, named))
@@ -190,18 +204,16 @@ class _Step:
 
     def _missing(self, envelope: Envelope) -> Refusal | _Waits | None:
         """Return what the envelope names that has not arrived."""
-        rows, subject, based_on = self._rows, envelope.subject, envelope.based_on
-        for field, named in (
-            ("site", envelope.site),
-            ("subject", subject if based_on is not None else None),
-            ("system", envelope.system),
-            ("visit", envelope.visit),
-        ):
-            if named is not None and named not in rows and named != envelope.uid:
-                return self._no_subject(envelope, field, named)
-        if based_on is not None and based_on not in self._on_file and based_on != envelope.uid:
-            return _Waits(based_on, "based_on")
-        return None
+        subject, based_on = envelope.subject, envelope.based_on
+        if _place(envelope) not in self._sound_places:
+            for field, named in (("site", envelope.site), ("system", envelope.system), ("visit", envelope.visit)):
+                if named is not None and named not in self._rows and named != envelope.uid:
+                    return self._no_subject(envelope, field, named)
+        if based_on is None or based_on == envelope.uid:
+            return None
+        if subject not in self._rows:
+            return self._no_subject(envelope, "subject", subject)
+        return None if based_on in self._on_file else _Waits(based_on, "based_on")
 
     def _no_subject(self, envelope: Envelope, field: str, named: str) -> Refusal | _Waits:
         on_file = self._on_file.get(named)
@@ -240,6 +252,9 @@ class _Step:
         return None
 
     def _fault_of_place(self, envelope: Envelope) -> Refusal | None:
+        place = _place(envelope)
+        if place in self._sound_places and envelope.kind != "site":
+            return None
         site = site_of(envelope.kind, envelope.subject, envelope.site)
         if envelope.kind == "site" and site != envelope.subject:
             return _refusal(envelope, "site", "a site is not part of another one; leave it out")
@@ -248,6 +263,8 @@ class _Step:
         for field, named in (("site", site), ("system", envelope.system), ("visit", envelope.visit)):
             if named is not None and (fault := self._fault_of_reference(envelope, field, named, site)):
                 return fault
+        if envelope.kind != "site":
+            self._sound_places.add(place)
         return None
 
     def _fault_of_reference(self, envelope: Envelope, field: str, named: str, site: str | None) -> Refusal | None:
@@ -277,7 +294,7 @@ class _Step:
             )
         )
         subject = envelope.subject
-        self._rows[subject] = in_force_after(self._rows.get(subject), _version(self._number, columns))
+        self._rows[subject] = in_force_after(self._rows.get(subject), self._number, columns)
         receipt = Receipt(envelope.uid, self._number, text.sha256, self._link)
         self._on_file[envelope.uid] = (subject, receipt)
         self.added.append(Added(envelope, receipt))
@@ -296,13 +313,11 @@ class _Step:
             refusals.keep(self._connection, refused)
         if waits:
             waiting.keep(self._connection, waits)
+            self._some_wait = True
 
 
-def _version(number: int, columns: Columns) -> Version:
-    return Version(
-        columns.subject, columns.kind, columns.site, columns.system, columns.performed_on, number, columns.uid,
-        columns.based_on, columns.withdrawn, columns.device,
-    )  # fmt: skip
+def _place(envelope: Envelope) -> tuple[str | None, str | None, str | None]:
+    return envelope.site, envelope.system, envelope.visit
 
 
 def _waiting(text: _Text, waits: _Waits) -> WaitingText:

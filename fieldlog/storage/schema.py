@@ -12,7 +12,6 @@ from sqlite_utils.migrations import Migrations
 
 from fieldlog.storage.connection import (
     APPLICATION_ID,
-    BUSY_SECONDS,
     SCHEMA_VERSION,
     Connection,
     at_the_edge,
@@ -25,7 +24,7 @@ migrations = Migrations("fieldlog")
 
 
 @at_the_edge
-def open_database(path: Path, *, create: bool = False, busy_seconds: float = BUSY_SECONDS) -> Connection:
+def open_database(path: Path, *, create: bool = False, busy_seconds: float | None = None) -> Connection:
     """Return a connection to the database, brought up to the present schema; with `create`, made if not there.
 
     Raises

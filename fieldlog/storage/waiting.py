@@ -40,6 +40,13 @@ def count(connection: Connection) -> int:
 
 
 @at_the_edge
+def is_empty(connection: Connection) -> bool:
+    """Return whether no text waits, as is usual."""
+    found: int = connection.execute("select exists (select 1 from waiting)").fetchone()[0]
+    return found == 0
+
+
+@at_the_edge
 def keep(connection: Connection, texts: Sequence[WaitingText]) -> None:
     """Keep texts until what they wait for arrives."""
     connection.executemany(

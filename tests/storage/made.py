@@ -41,10 +41,13 @@ def entry(kind: str, own: str, body: Mapping[str, Any] | None = None, **fields: 
 
 
 def drain_test(number: int, **fields: Any) -> Made:
-    body = {"performed_on": f"2023-{2 + number % 11:02}-17", "residual": {"value": f"{43 + number}", "unit": "psi"}}
-    return entry("main_drain_test", uid(number), body, **{"site": SITE, "system": SYSTEM, "visit": VISIT, **fields})
-
-
+    body = {
+        "performed_on": f"2023-{2 + number % 11:02}-17",
+        "residual": {"value": f"{43 + number}", "unit": "psi"},
+    }
+    return entry(
+        "main_drain_test", uid(number), body, **{"site": SITE, "system": SYSTEM, "visit": VISIT, **fields}
+    )
 
 
 def version(of: Made, number: int, based_on: str, says: str = "read again", **fields: Any) -> Made:
@@ -86,4 +89,7 @@ def take(connection: Connection, *made: Made, at: str = AT, via: Any = "import")
 def dump(connection: Connection, *tables: str) -> dict[str, list[Any]]:
     """Return every row of these tables, or of all, and of the schema."""
     names = tables or [row[0] for row in connection.execute("select name from sqlite_master where type = 'table'")]
-    return {name: connection.execute(f"select * from {name}").fetchall() for name in (*names, "sqlite_master")}
+    return {
+        name: connection.execute(f"select * from {name}").fetchall()  # noqa: S608
+        for name in (*names, "sqlite_master")
+    }

@@ -77,7 +77,9 @@ def test_a_chain_computed_anew_shows_against_a_known_head(filled: Connection) ->
     statements = triggers(filled)
     unguard(filled)
     text = filled.execute("select text from entries where number = 12").fetchone()[0].replace("2023", "2022")
-    filled.execute("update entries set text = ?, performed_on = '2022' || substr(performed_on, 5) where number = 12", (text,))
+    filled.execute(
+        "update entries set text = ?, performed_on = '2022' || substr(performed_on, 5) where number = 12", (text,)
+    )
     filled.execute("update current set performed_on = '2022' || substr(performed_on, 5) where number = 12")
     previous = FIRST_LINK
     for number, received_at, changed in filled.execute("select number, received_at, text from entries").fetchall():
@@ -125,7 +127,8 @@ Edit = Callable[[Connection, random.Random, int], tuple[int, str]]
 def a_text(connection: Connection, rng: random.Random, number: int) -> tuple[int, str]:
     text = connection.execute("select text from entries where number = ?", (number,)).fetchone()[0]
     at = rng.randrange(len(text))
-    connection.execute("update entries set text = ? where number = ?", (text[:at] + "~" + text[at + 1 :], number))
+    changed = text[:at] + "~" + text[at + 1 :]
+    connection.execute("update entries set text = ? where number = ?", (changed, number))
     return number, "text"
 
 
@@ -135,8 +138,10 @@ def a_text_that_is_no_text(connection: Connection, rng: random.Random, number: i
 
 
 def a_text_and_its_hash(connection: Connection, rng: random.Random, number: int) -> tuple[int, str]:
-    text = connection.execute("select text from entries where number = ?", (number,)).fetchone()[0] + " "
-    connection.execute("update entries set text = ?, sha256 = ? where number = ?", (text, sha256_hex(text), number))
+    (text,) = connection.execute("select text || ' ' from entries where number = ?", (number,)).fetchone()
+    connection.execute(
+        "update entries set text = ?, sha256 = ? where number = ?", (text, sha256_hex(text), number)
+    )
     return number, "link"
 
 
@@ -179,7 +184,9 @@ def a_number(connection: Connection, rng: random.Random, number: int) -> tuple[i
 
 def two_texts(connection: Connection, rng: random.Random, number: int) -> tuple[int, str]:
     other = number - 1 if number > 1 else number + 1
-    rows = connection.execute("select number, text from entries where number in (?, ?)", (number, other)).fetchall()
+    rows = connection.execute(
+        "select number, text from entries where number in (?, ?)", (number, other)
+    ).fetchall()
     (first, one), (second, two) = sorted(rows)
     connection.execute("update entries set text = ? where number = ?", (two, first))
     connection.execute("update entries set text = ? where number = ?", (one, second))
@@ -220,7 +227,7 @@ def a_column(connection: Connection, rng: random.Random, number: int) -> tuple[i
             ("uid", uid(77)),
         ]
     )
-    connection.execute(f"update entries set {column} = ? where number = ?", (value, number))
+    connection.execute(f"update entries set {column} = ? where number = ?", (value, number))  # noqa: S608
     return number, column
 
 
@@ -232,9 +239,15 @@ def whether_withdrawn(connection: Connection, rng: random.Random, number: int) -
 def the_version_in_force(connection: Connection, rng: random.Random, number: int) -> tuple[int, str]:
     (first,) = rng.choice(connection.execute("select first from current order by first").fetchall())
     change = rng.choice(
-        ["forked = 1 - forked", "withdrawn = 1 - withdrawn", "number = number + 1", "uid = subject || 'x'", "kind = 'x'"]
+        [
+            "forked = 1 - forked",
+            "withdrawn = 1 - withdrawn",
+            "number = number + 1",
+            "uid = subject || 'x'",
+            "kind = 'x'",
+        ]
     )
-    connection.execute(f"update current set {change} where first = ?", (first,))
+    connection.execute(f"update current set {change} where first = ?", (first,))  # noqa: S608
     return first, "current"
 
 

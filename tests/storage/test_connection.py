@@ -118,7 +118,8 @@ log = open_database(Path(sys.argv[1]), create=True)
 made.take(log, *made.register())
 result = chain.check(log)
 mode = log.execute("pragma journal_mode").fetchone()[0]
-print(connection.sqlite3.__name__, result.checked, result.fault, mode, connection.journal_for(connection.LIBRARY_VERSION).value[0])
+sound = connection.journal_for(connection.LIBRARY_VERSION).value[0]
+print(connection.sqlite3.__name__, result.checked, result.fault, mode, sound)
 """
 
 
@@ -252,10 +253,14 @@ def test_a_writer_that_takes_no_lock_file_is_waited_for_too(path: Path, empty: C
     second.close()
 
 
+def write_and_fail(connection: Connection) -> None:
+    connection.execute("insert into dirty_supplies values ('a', 3)")
+    raise ZeroDivisionError
+
+
 def test_an_error_in_a_transaction_comes_through_as_itself(empty: Connection) -> None:
     with pytest.raises(ZeroDivisionError), transaction(empty):
-        empty.execute("insert into dirty_supplies values ('a', 3)")
-        raise ZeroDivisionError
+        write_and_fail(empty)
     assert not empty.in_transaction
     assert empty.execute("select * from dirty_supplies").fetchall() == []
 

@@ -48,7 +48,7 @@ def test_nothing_but_a_digest_names_a_file(tmp_path: Path, name: str) -> None:
 
 def test_a_damaged_file_is_named_and_written_again(tmp_path: Path) -> None:
     files.put(tmp_path, b"abc")
-    files.path_of(tmp_path, ABC).write_bytes(b"abd")
+    files.path_of(tmp_path, ABC).write_bytes(b"abx")
     with pytest.raises(StorageError, match="is damaged"):
         files.read(tmp_path, ABC)
     files.put(tmp_path, b"abc")
@@ -79,7 +79,7 @@ def test_file_and_folders_are_synced_before_put_returns(tmp_path: Path, monkeypa
     real = os.fsync
 
     def fsync(descriptor: int) -> None:
-        synced.append(Path(os.readlink(f"/proc/self/fd/{descriptor}")).suffix or "folder")
+        synced.append(Path(f"/proc/self/fd/{descriptor}").readlink().suffix or "folder")
         real(descriptor)
 
     monkeypatch.setattr(os, "fsync", fsync)

@@ -42,10 +42,16 @@ def test_role_and_removal(connection: Connection) -> None:
     people.add_login(connection, ZOE)
     people.add_login(connection, Login("anna", PERSON, "owner", LATER))
     people.change_role(connection, "Zoe", "office")
-    assert [(login.name, login.role) for login in people.logins(connection)] == [("anna", "owner"), ("zoe", "office")]
+    assert [(login.name, login.role) for login in people.logins(connection)] == [
+        ("anna", "owner"),
+        ("zoe", "office"),
+    ]
     people.remove_login(connection, "zoe")
     assert [login.name for login in people.logins(connection)] == ["anna"]
-    for missing in (lambda: people.remove_login(connection, "zoe"), lambda: people.change_role(connection, "zoe", "owner")):
+    for missing in (
+        lambda: people.remove_login(connection, "zoe"),
+        lambda: people.change_role(connection, "zoe", "owner"),
+    ):
         with pytest.raises(NotFoundError, match="zoe"):
             missing()
 
