@@ -151,6 +151,7 @@ class _Reader:
             air_supervised=body.air_supervised,
             alarm=body.alarm,
             valves=tuple(valve.id for valve in body.valves),
+            normally_shut=tuple(valve.id for valve in body.valves if valve.normal != "open"),
             on_supply_since=body.on_supply_since,
             on_supply_until=self._left_on(one),
             feed_changed_on=body.feed_changed_on,

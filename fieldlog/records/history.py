@@ -277,6 +277,7 @@ class System:
     air_supervised: bool | None = None
     alarm: str | None = None  # kind of waterflow alarm
     valves: tuple[str, ...] = ()  # ids
+    normally_shut: tuple[str, ...] = ()  # ids of valves whose normal position is not open
     on_supply_since: date | None = None
     on_supply_until: date | None = None  # from that day on another supply
     feed_changed_on: date | None = None

@@ -116,4 +116,13 @@ class SystemStatement:
     trends: tuple[Trend, ...] = ()
     blind_loss: BlindLoss | None = None
     cannot_show: tuple[str, ...] = ()  # codes
+    findings: tuple[Reason, ...] = ()  # gauges, alarm and delivery times: beside the statement
+    checks: tuple[str, ...] = ()  # codes of likely places to look, for a qualified person
     misread: tuple[int, ...] = ()
+
+    @property
+    def worst(self) -> Statement:
+        """The worse of what is said now and what still stands from earlier."""
+        return min(
+            (said for said in (self.statement, self.earlier) if said is not None), key=lambda said: said.rank
+        )
