@@ -31,7 +31,7 @@ TRUSTED_FOLDER = "trusted"
 _KEY_BITS = 3072
 _SIGNER_LIFE = timedelta(days=10 * 365)
 _AUTHORITY_LIFE = timedelta(days=20 * 365)
-# The longest common name and organisation name that a certificate may carry (X.520, ub-common-name), here in bytes.
+# The longest name that a certificate may carry (X.520, ub-common-name); cryptography counts it in bytes.
 _LONGEST_NAME = 64
 
 TrustRoots = tuple[asn1_x509.Certificate, ...]
