@@ -263,8 +263,7 @@ class _Step:
         for field, named in (("site", site), ("system", envelope.system), ("visit", envelope.visit)):
             if named is not None and (fault := self._fault_of_reference(envelope, field, named, site)):
                 return fault
-        if envelope.kind != "site":
-            self._sound_places.add(place)
+        self._sound_places.add(place)
         return None
 
     def _fault_of_reference(self, envelope: Envelope, field: str, named: str, site: str | None) -> Refusal | None:

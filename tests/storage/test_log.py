@@ -302,12 +302,19 @@ def test_a_waiting_text_sent_again_still_waits_and_another_text_is_refused(conne
     assert refused.code == "conflict"
 
 
-def test_what_it_waits_for_and_a_repeat_of_it_in_one_batch(connection: Connection) -> None:
-    made = drain_test(31, site=uid(99), system=None, visit=None)
+@pytest.mark.parametrize("site_first", [False, True])
+def test_what_it_waits_for_and_a_repeat_of_it_in_one_batch(connection: Connection, *, site_first: bool) -> None:
+    made, site = drain_test(31, site=uid(99), system=None, visit=None), entry("site", uid(99))
     take(connection, made)
-    result = take(connection, made, entry("site", uid(99))).result
-    assert [receipt.uid for receipt in result.receipts] == [uid(31), uid(99)]
+    result = take(connection, *([site, made] if site_first else [made, site])).result
+    assert {receipt.uid for receipt in result.receipts} == {uid(31), uid(99)}
     assert (result.waiting, result.repeated) == ((), ())
+    assert waiting.count(connection) == 0
+
+
+def test_a_site_is_not_part_of_another_one_whatever_came_before_it(connection: Connection) -> None:
+    result = take(connection, entry("note", uid(31), site=SITE), entry("site", uid(32), site=SITE)).result
+    assert [(refusal.uid, refusal.field) for refusal in result.refused] == [(uid(32), "site")]
 
 
 def test_a_waiting_text_that_turns_out_not_to_fit_is_refused_and_kept(connection: Connection) -> None:
@@ -341,6 +348,17 @@ def test_an_empty_batch_changes_nothing(connection: Connection) -> None:
     assert take(connection).added == ()
 
 
+COPIED = "received_at, sha256, link, via, text, kind, subject, author, made_at, withdrawn"
+AFTER_A_GAP = (
+    f"insert into entries (number, uid, {COPIED}) select 99, 'f' || substr(uid, 2), {COPIED} "  # noqa: S608
+    "from entries where number = 3"
+)
+REPLACING_BY_UID = (
+    f"insert or replace into entries (number, uid, {COPIED}) select 8, uid, {COPIED} "  # noqa: S608
+    "from entries where number = 3"
+)
+
+
 @pytest.mark.parametrize(
     "statement",
     [
@@ -350,11 +368,11 @@ def test_an_empty_batch_changes_nothing(connection: Connection) -> None:
         "delete from entries",
         "insert or replace into entries select * from entries where number = 3",
         "replace into entries select * from entries where number = 3",
+        "insert or ignore into entries select * from entries where number = 3",
         "insert into entries select * from entries where number = 3 on conflict (number) do update set via = via",
-        "insert into entries select * from entries where number = 3 on conflict (uid) do update set text = 'x'",
-        "insert into entries (number, uid, received_at, sha256, link, via, text, kind, subject, author, made_at, "
-        "insert into entries select * from entries where number = 3 on conflict (number) do update set via = via",
-        "made_at, withdrawn from entries where number = 3",
+        "insert into entries select * from entries where number = 3 on conflict (uid) do update set via = via",
+        AFTER_A_GAP,
+        REPLACING_BY_UID,
         "delete from refusals",
         "update refusals set text = x'41'",
     ],
