@@ -57,7 +57,8 @@ def frame(size: Size, grid: Sequence[float], column: Sequence[str], lines_below:
     """Return the frame that leaves room for grid numbers, labels and `lines_below` lines of text."""
     numbers = max((text_width(number_label(value), size.text) for value in grid), default=0.0)
     labels = column_width(column, size.text, size.width * _MOST_COLUMN)
-    right = size.width - (labels + 1.2 * size.text if column else 0.5 * size.text)
+    # The last number of the axis below reaches over the plot's end by half its width.
+    right = size.width - max(labels + 1.2 * size.text, 2.0 * size.text)
     top, bottom = 1.9 * size.text, size.height - (0.5 + 1.35 * lines_below) * size.text
     return Frame(size, Box(numbers + 0.7 * size.text, top, right, bottom))
 

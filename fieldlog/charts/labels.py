@@ -69,7 +69,7 @@ def label_boxes(scene: Scene) -> tuple[Box, ...]:
 
 def column_width(texts: Iterable[str], size: float, most: float) -> float:
     """Return how wide a column of labels has to be, wrapped to lines not wider than `most`."""
-    lines = (line for text in texts for line in wrapped(text, size, most))
+    lines = (line for text in texts for line in wrapped(text, size, most, is_bold=True))
     return max((text_width(line, size, is_bold=True) for line in lines), default=0.0)
 
 
@@ -79,7 +79,7 @@ def end_column(labels: Sequence[EndLabel], left: float, room: Box, size: float) 
     A label that had to move, or whose line ends earlier, gets a thin leader. Labels for which the column has no
     room are left out, the last ones first.
     """
-    blocks = [(label, wrapped(label.text, size, room.right - left)) for label in labels]
+    blocks = [(label, wrapped(label.text, size, room.right - left, is_bold=True)) for label in labels]
     while blocks and sum(_height(lines, size) for _, lines in blocks) > room.bottom - room.top:
         blocks.pop()
     blocks.sort(key=lambda block: block[0].at[1])

@@ -30,23 +30,25 @@ def text_width(text: str, size: float, *, is_bold: bool = False) -> float:
     return size * sum(widths.get(character, _OTHER_EM) for character in text)
 
 
-def wrapped(text: str, size: float, width: float, *, most_lines: int = 2) -> tuple[str, ...]:
+def wrapped(
+    text: str, size: float, width: float, *, most_lines: int = 2, is_bold: bool = False
+) -> tuple[str, ...]:
     """Return `text` in lines not wider than `width`; what is too long ends in an ellipsis."""
     lines: list[str] = []
     for word in text.split():
         longer = f"{lines[-1]} {word}" if lines else word
-        if lines and text_width(longer, size) <= width:
+        if lines and text_width(longer, size, is_bold=is_bold) <= width:
             lines[-1] = longer
         else:
             lines.append(word)
     if len(lines) > most_lines:
         lines = [*lines[: most_lines - 1], " ".join(lines[most_lines - 1 :])]
-    return tuple(_cut(line, size, width) for line in lines)
+    return tuple(_cut(line, size, width, is_bold=is_bold) for line in lines)
 
 
-def _cut(line: str, size: float, width: float) -> str:
-    if text_width(line, size) <= width:
+def _cut(line: str, size: float, width: float, *, is_bold: bool) -> str:
+    if text_width(line, size, is_bold=is_bold) <= width:
         return line
-    while line and text_width(line + "…", size) > width:
+    while line and text_width(line + "…", size, is_bold=is_bold) > width:
         line = line[:-1]
     return line.rstrip() + "…"

@@ -1,4 +1,4 @@
-"""What the charts show: true positions, dashes where nothing was measured, gaps, few grid lines; in grey as well."""
+"""What the charts show: true positions, dashes where nothing was measured, gaps, few grid lines; grey copies."""
 
 from __future__ import annotations
 
