@@ -122,7 +122,7 @@ class Found:
 def folded_name(text: str) -> str:
     """Return `text` as names are compared: no case, apostrophes and hyphens, single spaces for any separator."""
     plain = unicodedata.normalize("NFKC", text).casefold().replace("’", "").replace("'", "")
-    return re.sub(r"[\s_\-./:#]+", " ", plain).strip()
+    return re.sub(r"[\s_\-./:#,()\[\]]+", " ", plain).strip()
 
 
 def kind_named(typed: str) -> str:

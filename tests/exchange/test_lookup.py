@@ -56,7 +56,11 @@ SUPPLIED = Lookup(
     Names(
         sites={HARBOUR: Named(("Harbour Cold Store",)), MILL: Named(("Old Mill",))},
         systems={"s1": Named(("Wet system 2",), HARBOUR, "p2"), "s2": Named(("Wet system 2",), MILL)},
-        supplies={"p1": Named(("Street",), HARBOUR), "p2": Named(("Tank",), HARBOUR), "p3": Named(("Main",), MILL)},
+        supplies={
+            "p1": Named(("Street",), HARBOUR),
+            "p2": Named(("Tank",), HARBOUR),
+            "p3": Named(("Main",), MILL),
+        },
     )
 )
 
