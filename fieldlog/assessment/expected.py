@@ -97,7 +97,7 @@ class Expected:
             month=None,
             static_low_psi=self.static.low,
             static_high_psi=self.static.high,
-            residual_low_psi=residual.low,
+            residual_low_psi=max(residual.low, 0.0),
             residual_high_psi=residual.high,
         )
 

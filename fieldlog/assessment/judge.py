@@ -22,7 +22,7 @@ from fieldlog.assessment.trend import trends
 from fieldlog.assessment.windows import add_months
 from fieldlog.records.history import DrainTest, SupplyHistory, System
 from fieldlog.records.rules import RuleProfile
-from fieldlog.records.statement import BlindLoss, Reason, Statement, SystemStatement
+from fieldlog.records.statement import BlindLoss, ExpectedBand, Reason, Statement, SystemStatement
 
 
 @dataclass(frozen=True, slots=True)
@@ -85,7 +85,7 @@ def _judge(scene: _Scene, version: str) -> SystemStatement:
         next=next_steps(verdict, evidence),
         ten_percent=evidence.ten_percent,
         margin_on_day=measured.margin,
-        expected=() if evidence.bands_now is None else (evidence.bands_now.band(),),
+        expected=_bands(evidence, verdict),
         trends=evidence.trends,
         blind_loss=evidence.blind,
         cannot_show=cannot_show(scene.history, scene.system),
@@ -168,6 +168,13 @@ def _worse_before(scene: _Scene, tests: Sequence[DrainTest], verdict: Verdict) -
         if before != Statement.NOT_COMPARABLE:
             return before if before.rank < Statement.NOT_COMPARABLE.rank else None
     return None
+
+
+def _bands(evidence: Evidence, verdict: Verdict) -> tuple[ExpectedBand, ...]:
+    """Return where the next readings should fall; a test that suggests an impairment is no measure of that."""
+    is_suspect = verdict.statement == Statement.SUSPECTED_IMPAIRMENT
+    bands = evidence.bands if is_suspect else evidence.bands_now
+    return () if bands is None else (bands.band(),)
 
 
 def _findings(scene: _Scene) -> tuple[Reason, ...]:
