@@ -7,17 +7,18 @@ import hashlib
 from collections.abc import Callable, Iterator
 from contextlib import contextmanager
 from dataclasses import dataclass
-from typing import Any
+from typing import Any, cast
 
 import msgspec
 
 from fieldlog.canonical import sha256_hex
 from fieldlog.storage.columns import Columns, columns_of
 from fieldlog.storage.connection import Connection, at_the_edge, sqlite3
-from fieldlog.storage.current import CurrentRow, replay
+from fieldlog.storage.current import CurrentRow, Following
 
 FIRST_LINK = "0" * 64  # stands for the link before the first entry
 
+Row = tuple[Any, ...]
 Progress = Callable[[int, int], None]  # entries checked, of how many
 
 _PROGRESS_STEP = 10_000
@@ -72,7 +73,7 @@ def check(
 
 def _checked(connection: Connection, progress: Progress, expected_head: str | None) -> CheckResult:
     walk = _Walk(connection, expected_head)
-    fault = walk.fault(progress) or _fault_of_guards(connection) or _fault_of_current(connection)
+    fault = walk.fault(progress) or _fault_of_guards(connection) or walk.fault_of_current()
     return CheckResult(walk.number, walk.head, fault)
 
 
@@ -107,6 +108,8 @@ class _Walk:
         self.head = FIRST_LINK
         self._connection = connection
         self._expected_head = expected_head
+        self._following = Following(connection)
+        self._current = _CurrentTable(connection)
 
     def fault(self, progress: Progress) -> Fault | None:
         """Go forward to the end or the first fault."""
@@ -116,11 +119,59 @@ class _Walk:
             if found := _fault_of_row(row, self.number + 1, self.head):
                 return found
             self.number, self.head = row[0], row[3]
+            if settled := self._following.row_of(self.number, Columns._make(row[5:])):
+                self._current.compare(settled)
             is_expected_seen = is_expected_seen or self.head == self._expected_head
             if self.number % _PROGRESS_STEP == 0:
                 progress(self.number, entries)
         progress(self.number, entries)
         return None if is_expected_seen else _unknown_head(self.number, self._expected_head)
+
+    def fault_of_current(self) -> Fault | None:
+        """Return the first subject whose row of `current` differs from what its entries say."""
+        for row in self._following.rest():
+            self._current.compare(row)
+        return self._current.fault()
+
+
+class _CurrentTable:
+    """The rows that are there, beside those the entries give.
+
+    Both come in the order of `first`, but for those of subjects with later versions, which are given last: what is
+    found before its turn is set aside.
+    """
+
+    def __init__(self, connection: Connection) -> None:
+        columns = ", ".join(CurrentRow._fields)
+        self._there = connection.execute(f"select {columns} from current order by first")  # noqa: S608
+        self._aside: dict[int, Row] = {}
+        self._faulty: list[Row] = []
+
+    def compare(self, expected: CurrentRow) -> None:
+        """Note the row if it is not there as expected."""
+        row = self._aside.pop(expected.first, None) or self._row_of(expected.first)
+        if row != expected:
+            self._faulty.append(expected)
+
+    def fault(self) -> Fault | None:
+        """Return the first of the rows noted and of those nobody expected."""
+        faulty = [*self._faulty, *self._aside.values(), *self._there]
+        if not faulty:
+            return None
+        row = CurrentRow._make(min(faulty, key=lambda each: int(each[0])))
+        message = (
+            f"the version in force of {row.subject} differs from what its entries say; run `fieldlog rebuild`"
+        )
+        return Fault(row.first, row.subject, "current", message)
+
+    def _row_of(self, first: int) -> Row | None:
+        for row in self._there:
+            if row[0] == first:
+                return cast("Row", row)
+            self._aside[row[0]] = row
+            if row[0] > first:
+                break
+        return None
 
 
 def _unknown_head(number: int, expected_head: str | None) -> Fault:
@@ -131,30 +182,33 @@ def _unknown_head(number: int, expected_head: str | None) -> Fault:
     return Fault(number + 1, "", "head", message)
 
 
-def _fault_of_row(row: tuple[Any, ...], expected: int, previous: str) -> Fault | None:
+def _fault_of_row(row: Row, expected: int, previous: str) -> Fault | None:
     number, received_at, sha256, entry_link, text = row[:5]
     if number != expected:
         message = f"entry {expected} is not there; the next one is {number}"
         return Fault(expected, "", "missing", message)
     digest = sha256_hex(text)
     if digest != sha256:
-        is_text = link(number, received_at, previous, sha256) == entry_link
-        return (
-            _fault(row, "text", "is not the one that was hashed") if is_text else _fault(row, "sha256", "is not")
-        )
+        if link(number, received_at, previous, digest) == entry_link:
+            return _fault(row, "sha256", "is not the hash of its text")
+        return _fault(row, "text", "is not the one that was hashed")
     if link(number, received_at, previous, digest) != entry_link:
         return _fault(row, "link", "does not follow from number, time, hash and the link before")
+    return _fault_of_columns(row, text)
+
+
+def _fault_of_columns(row: Row, text: str) -> Fault | None:
     try:
         columns = columns_of(text)
     except msgspec.MsgspecError:
         return _fault(row, "text", "is not the JSON of an entry")
-    if row[5:] != columns:
-        name = next(name for name, has, says in zip(Columns._fields, row[5:], columns, strict=True) if has != says)
-        return _fault(row, name, "differs from the text")
-    return None
+    if row[5:] == columns:
+        return None
+    name = next(name for name, has, says in zip(Columns._fields, row[5:], columns, strict=True) if has != says)
+    return _fault(row, name, "differs from the text")
 
 
-def _fault(row: tuple[Any, ...], what: str, message: str) -> Fault:
+def _fault(row: Row, what: str, message: str) -> Fault:
     number, uid = row[0], row[_UID]
     return Fault(number, uid, what, f"entry {number} ({uid}): its {what} {message}")
 
@@ -164,36 +218,4 @@ def _fault_of_guards(connection: Connection) -> Fault | None:
     for name in _GUARDS:
         if name not in there:
             return Fault(0, "", "guard", f"the trigger {name}, which keeps entries as they are, is not there")
-    return None
-
-
-def _fault_of_current(connection: Connection) -> Fault | None:
-    """Return the first subject whose row differs from what the entries say.
-
-    Both come in the order of `first`, but for the replayed rows of subjects with later versions, which come last:
-    what is found before its turn is set aside.
-    """
-    columns = ", ".join(CurrentRow._fields)
-    found = map(CurrentRow._make, connection.execute(f"select {columns} from current order by first"))  # noqa: S608
-    aside: dict[int, CurrentRow] = {}
-    faulty: list[CurrentRow] = []
-    for expected in replay(connection):
-        row = aside.pop(expected.first, None) or _row_of(found, expected.first, aside)
-        if row != expected:
-            faulty.append(expected)
-    faulty.extend((*aside.values(), *found))
-    if not faulty:
-        return None
-    row = min(faulty, key=lambda each: each.first)
-    message = f"the version in force of {row.subject} differs from what its entries say; run `fieldlog rebuild`"
-    return Fault(row.first, row.subject, "current", message)
-
-
-def _row_of(found: Iterator[CurrentRow], first: int, aside: dict[int, CurrentRow]) -> CurrentRow | None:
-    for row in found:
-        if row.first == first:
-            return row
-        aside[row.first] = row
-        if row.first > first:
-            break
     return None

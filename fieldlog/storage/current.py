@@ -41,9 +41,11 @@ def in_force_after(before: CurrentRow | None, number: int, version: Columns) -> 
 
 
 def _in_force(first: int, number: int, version: Columns, forked: int) -> CurrentRow:
-    return CurrentRow(
-        first, version.subject, version.kind, version.site, version.system, version.performed_on, number,
-        version.uid, forked, version.withdrawn,
+    return CurrentRow._make(
+        (
+            first, version.subject, version.kind, version.site, version.system, version.performed_on, number,
+            version.uid, forked, version.withdrawn,
+        )
     )  # fmt: skip
 
 
@@ -84,12 +86,29 @@ def rebuild_current(connection: Connection) -> int:
 
 def replay(connection: Connection) -> Iterator[CurrentRow]:
     """Yield every row that the entries give: by `first`, and at the end those of subjects with later versions."""
-    later = connection.execute("select distinct subject from entries where subject <> uid")
-    changed: dict[str, CurrentRow | None] = dict.fromkeys(subject for (subject,) in later)
-    for *columns, number in connection.execute(_VERSIONS):
-        version = Columns._make(columns)
-        if version.subject in changed:
-            changed[version.subject] = in_force_after(changed[version.subject], number, version)
-        else:
-            yield in_force_after(None, number, version)
-    yield from filter(None, changed.values())
+    following = Following(connection)
+    for row in connection.execute(_VERSIONS):
+        settled = following.row_of(row[-1], Columns._make(row[:-1]))
+        if settled is not None:
+            yield settled
+    yield from following.rest()
+
+
+class Following:
+    """Applies the rule to all entries in order, holding only subjects that have later versions."""
+
+    def __init__(self, connection: Connection) -> None:
+        later = connection.execute("select distinct subject from entries where subject <> uid")
+        self._changed: dict[str, CurrentRow | None] = dict.fromkeys(subject for (subject,) in later)
+
+    def row_of(self, number: int, version: Columns) -> CurrentRow | None:
+        """Return the subject's row, or None while later versions are to come."""
+        subject = version.subject
+        if subject not in self._changed:
+            return in_force_after(None, number, version)
+        self._changed[subject] = in_force_after(self._changed[subject], number, version)
+        return None
+
+    def rest(self) -> Iterator[CurrentRow]:
+        """Yield the rows of the subjects with later versions, once all entries were seen."""
+        return filter(None, self._changed.values())
