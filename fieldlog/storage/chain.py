@@ -155,10 +155,10 @@ class _CurrentTable:
 
     def fault(self) -> Fault | None:
         """Return the first of the rows noted and of those nobody expected."""
-        faulty = [*self._faulty, *self._aside.values(), *self._there]
+        faulty: list[Row] = [*self._faulty, *self._aside.values(), *self._there]
         if not faulty:
             return None
-        row = CurrentRow._make(min(faulty, key=lambda each: int(each[0])))
+        row = CurrentRow._make(min(faulty, key=lambda each: each[0]))
         message = (
             f"the version in force of {row.subject} differs from what its entries say; run `fieldlog rebuild`"
         )
