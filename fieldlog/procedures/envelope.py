@@ -71,7 +71,26 @@ def shape_error(error: msgspec.ValidationError) -> InputError:
     field = path.rstrip("`").lstrip(".")
     if not field and "field `" in said:
         field = said.split("field `", 1)[1].split("`", 1)[0]
-    return InputError(f"{field or 'the entry'}: {said}; mend this field and send it again", field=field)
+    return InputError(f"{field or 'the entry'}: {_in_words(said)}; mend this field and send it again", field=field)
+
+
+# What the patterns of the types ask for, in words.
+_FORMS = (
+    (r"[0-9a-f]{8}-", "a UUID in lower case is expected"),
+    (r"T[0-9]{2}:[0-9]{2}:[0-9]{2}Z", "a time in UTC is expected, such as 2026-10-03T09:30:00Z"),
+    (r"T[0-9]{2}:[0-9]{2}(", "a time with its zone is expected, such as 2026-10-03T09:30+02:00"),
+    (r"^[0-9a-f]{64}$", "64 hexadecimal digits are expected"),
+    (r"[01][0-9]|2[0-3]", "a time of day is expected, such as 09:30"),
+    (r"(\.[0-9]", "a decimal number as text is expected, such as 72.5"),
+)
+
+
+def _in_words(said: str) -> str:
+    """Return what the decoder said, with patterns put into words."""
+    if "matching regex" not in said:
+        return said
+    pattern = said.split("matching regex", 1)[1].replace("\\\\", "\\")
+    return next((words for part, words in _FORMS if part in pattern), "not in the expected form")
 
 
 def _plain(text: str) -> dict[str, Any]:

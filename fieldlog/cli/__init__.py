@@ -1,0 +1,1 @@
+"""The command `fieldlog`: one module a group of commands, each calling one service."""
