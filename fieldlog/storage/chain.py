@@ -7,6 +7,7 @@ import hashlib
 from collections.abc import Callable, Iterator
 from contextlib import contextmanager
 from dataclasses import dataclass
+from operator import itemgetter
 from typing import Any, cast
 
 import msgspec
@@ -158,7 +159,8 @@ class _CurrentTable:
         faulty: list[Row] = [*self._faulty, *self._aside.values(), *self._there]
         if not faulty:
             return None
-        row = CurrentRow._make(min(faulty, key=lambda each: each[0]))
+        first: Row = min(faulty, key=itemgetter(0))
+        row = CurrentRow._make(first)
         message = (
             f"the version in force of {row.subject} differs from what its entries say; run `fieldlog rebuild`"
         )
