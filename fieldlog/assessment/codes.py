@@ -19,13 +19,14 @@ class ReasonCode(StrEnum):
     VALVE_SHUT_LONG = "valve_shut_long"  # valve, hours, limit_hours
     RESIDUAL_FELL_QUARTER = "residual_fell_quarter"  # reduction, residual_psi, reference_psi, against
     IMPAIRMENT_OPEN = "impairment_open"  # began_at
+    STANDS_FROM = "stands_from"  # performed_on: signs of that day that no later comparable test has answered
 
     # below demand, margin
     BELOW_DEMAND = "below_demand"  # margin_psi, available_psi, required_psi, demand_flow_gpm
-    MARGIN_MEASURED = (
-        "margin_measured"  # margin_psi, low_psi, high_psi, rule_margin_psi, available_psi, required_psi,
-    )
-    #                                      demand_flow_gpm, hose_outside_gpm, basis, performed_on
+    FORWARD_FLOW_SHORT = "forward_flow_short"  # riser_psi, required_psi, flow_gpm, performed_on
+    # margin_psi, low_psi, high_psi, rule_margin_psi, available_psi, required_psi, demand_flow_gpm,
+    # hose_outside_gpm, basis, performed_on?
+    MARGIN_MEASURED = "margin_measured"
     MARGIN_LOW_BOUND = "margin_low_bound"  # low_psi, rule_margin_psi
     EXTRAPOLATED = "extrapolated"  # tested_gpm, demand_gpm
     INSIDE_HOSE_UNKNOWN = "inside_hose_unknown"  # margin_without_psi, margin_with_psi, hose_inside_gpm
@@ -43,8 +44,12 @@ class ReasonCode(StrEnum):
     NOT_FULL_FLOW = "not_full_flow"
     NOT_SETTLED = "not_settled"
     PUMP_STATE_DIFFERS = "pump_state_differs"  # now, earlier
+    PUMP_STARTED = "pump_started"  # static_state, residual_state: differs within one test
     VALVE_STATE_DIFFERS = "valve_state_differs"
     DRAIN_DIFFERS = "drain_differs"  # now, earlier
+    DRAIN_ALTERED = "drain_altered"  # altered since the earlier test
+    FEED_DIFFERS = "feed_differs"  # changed_on
+    SYSTEM_SIDE_GAUGE = "system_side_gauge"  # gauge
     TAP_DIFFERS = "tap_differs"  # now, earlier
     KIND_WITHOUT_OWN_TEST = "kind_without_own_test"  # kind
     BEHIND_REDUCING_VALVE = "behind_reducing_valve"  # place
@@ -62,6 +67,10 @@ class ReasonCode(StrEnum):
     FEW_COMPARABLE = "few_comparable"  # tests
     CONDITIONS_NOT_STATED = "conditions_not_stated"  # conditions
     BLIND_LOSS_ABOVE_MARGIN = "blind_loss_above_margin"  # loss_psi?, left_psi
+    BLIND_LOSS_UNKNOWN = "blind_loss_unknown"
+    DRAIN_SIZE_UNKNOWN = "drain_size_unknown"
+    FIGURES_UNUSABLE = "figures_unusable"  # of: feed, flow test, design supply, stated points
+    NO_MARGIN_OF_KIND = "no_margin_of_kind"  # kind: a test of its own is on file, still no margin is given
     NO_PROFILE = "no_profile"
 
     # stands beside
@@ -71,10 +80,13 @@ class ReasonCode(StrEnum):
     TRAPPED_PRESSURE = "trapped_pressure"  # static_before_psi, static_after_psi
     DIVISION_UNKNOWN = "division_unknown"  # gauge?, assumed_psi
     HEAPED_READINGS = "heaped_readings"  # step_psi
+    GAUGE_REPLACED = "gauge_replaced"  # sigma_psi: a new gauge may read differently by so much
     INDEX_SMALLER_THAN_READ = "index_smaller_than_read"  # drop_psi, limit_psi
     RESIDUAL_ABOVE_STATIC = "residual_above_static"  # residual_psi, static_psi
     DRAIN_INDEX = "drain_index"  # index, sigma, earlier?
     PUMP_INDEX_ONLY = "pump_index_only"
+    LOW_DAY_NOT_JUDGED = "low_day_not_judged"  # the profile asks for a low day; the day of the test is judged
+    FLOW_TEST_AGE_NOT_RULED = "flow_test_age_not_ruled"  # performed_on
     SET_POINT_DIFFERS = "set_point_differs"  # of, read_psi, set_psi
     HOLDING = "holding"
 
@@ -106,6 +118,8 @@ class NextCode(StrEnum):
     ENTER_DEMAND = "enter_demand"
     ENTER_FEED = "enter_feed"
     ENTER_ELEVATIONS = "enter_elevations"
+    ENTER_DRAIN_SIZE = "enter_drain_size"
+    MEND_FIGURES = "mend_figures"
     ENTER_PROFILE = "enter_profile"
     STATE_CONDITIONS = "state_conditions"
     NEXT_TEST = "next_test"
