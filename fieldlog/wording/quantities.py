@@ -31,6 +31,8 @@ def rounded(value: float, decimals: int, rounding: Rounding = "nearest") -> str:
     """Return `value` with `decimals` digits after the point (negative: tens, hundreds), minus sign as U+2212."""
     if not math.isfinite(value):
         return "not a number" if math.isnan(value) else ("−∞" if value < 0 else "∞")
+    if abs(value) >= 1e15:
+        return f"{value:.3e}".replace("-", "−")
     # Twelve digits first: 0.1 + 0.2 must not be rounded up to 0.4.
     exact = Decimal(repr(float(f"{value:.12g}")))
     kept = exact.quantize(Decimal(1).scaleb(-decimals), rounding=_ROUNDINGS[rounding])
@@ -92,6 +94,8 @@ def percent(share: float, *, reaches: bool | None = None, limit: Decimal = Decim
     """
     if not math.isfinite(share):
         return "an unknown share"
+    if abs(100 * share - float(limit)) > 0.5:
+        return f"{rounded(100 * share, 1)} %"
     is_reached = reaches if reaches is not None else 100 * share >= float(limit) - 1e-9
     for decimals in range(1, 5):
         text = rounded(100 * share, decimals)
