@@ -97,7 +97,7 @@ SENTENCES: Mapping[str, tuple[str, ...]] = {
         "The pump was in two states within the test: {static_state} at static, {residual_state} at residual",
     ),
     Code.VALVE_STATE_DIFFERS: ("Valves on the way are on record in other positions than at the earlier test",),
-    Code.DRAIN_DIFFERS: ("Not the drain or feed of the earlier test: {now} now", ", {earlier} then"),
+    Code.DRAIN_DIFFERS: ("Not the drain of the earlier test", ": {now:typed} now", ", {earlier:typed} then"),
     Code.DRAIN_ALTERED: ("The drain was altered since the earlier test",),
     Code.FEED_DIFFERS: ("The feed was altered on {changed_on}, after the earlier test",),
     Code.SYSTEM_SIDE_GAUGE: ("Gauge {gauge} is on the system side, where pressure can be trapped",),

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
 
+from fieldlog.assessment.codes import ReasonCode
 from fieldlog.records.statement import (
     BlindLoss,
     ExpectedBand,
@@ -15,7 +16,7 @@ from fieldlog.records.statement import (
 )
 from fieldlog.units import SiteUnits
 from fieldlog.wording.quantities import Reader, counted, day, listed, month_name, percent, rounded
-from fieldlog.wording.reasons import reason_sentence
+from fieldlog.wording.reasons import reason_sentence, reason_with_entries
 from fieldlog.wording.steps import next_sentence
 
 _BASES = {
@@ -56,6 +57,20 @@ def state_sentence(statement: SystemStatement) -> str:
     return sentence
 
 
+def system_sentences(
+    statement: SystemStatement, units: SiteUnits, names: Mapping[str, str] | None = None
+) -> tuple[str, ...]:
+    """Return the comparison with earlier tests, every reason and every finding, each with its entries."""
+    compared = (
+        ten_percent_sentence(statement.ten_percent),
+        *(ten_percent_doubt_sentence(one) for one in statement.ten_percent if one.flagged),
+    )
+    # The flagged comparisons stand in the first sentence already, to the same digits.
+    found = [one for one in (*statement.reasons, *statement.findings) if one.code != ReasonCode.TEN_PERCENT]
+    said = (*compared, *(reason_with_entries(one, units, names) for one in found))
+    return tuple(dict.fromkeys(sentence for sentence in said if sentence))
+
+
 def _size_sentences(statement: SystemStatement, units: SiteUnits, names: Mapping[str, str]) -> list[str]:
     reasons = [reason_sentence(reason, units, names) for reason in statement.reasons[:1]]
     if statement.statement is Statement.SUSPECTED_IMPAIRMENT:
@@ -63,6 +78,8 @@ def _size_sentences(statement: SystemStatement, units: SiteUnits, names: Mapping
     margin = deciding_margin(statement)
     finer = digits_of(statement, units)
     size = [margin_sentence(margin, units, is_low_day=_is_low_day(statement), finer=finer)] if margin else []
+    if statement.reasons and statement.reasons[0].code in {ReasonCode.BELOW_DEMAND, ReasonCode.MARGIN_MEASURED}:
+        return size or reasons
     if statement.statement is Statement.CHANGED:
         if any(compared.flagged for compared in statement.ten_percent):
             reasons = [ten_percent_sentence(statement.ten_percent)]

@@ -100,9 +100,14 @@ def cannot_show_sentence(code: str) -> str:
     return NOT_SHOWN[code]
 
 
+def check_sentence(code: str) -> str:
+    """Return a likely place to look, for a qualified person; never a diagnosis."""
+    return capital(CHECKS[code])
+
+
 def what_to_check(codes: Iterable[str]) -> tuple[str, ...]:
-    """Return likely places to look, most likely first, for a qualified person; never a diagnosis."""
-    return tuple(capital(CHECKS[code]) for code in codes)
+    """Return likely places to look, most likely first."""
+    return tuple(check_sentence(code) for code in codes)
 
 
 def refusal_sentence(code: str, field: str, message: str) -> str:

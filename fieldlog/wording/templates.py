@@ -72,6 +72,8 @@ class _Shown:
     names: Mapping[str, str]
 
     def __format__(self, spec: str) -> str:
+        if spec == "typed":
+            return str(self.value)
         if isinstance(self.value, bool):
             return _confirmed(is_confirmed=self.value) if self.name == "is_confirmed" else str(self.value).lower()
         if isinstance(self.value, str):
