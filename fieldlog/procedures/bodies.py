@@ -13,6 +13,7 @@ import msgspec
 from fieldlog.errors import InputError
 from fieldlog.procedures.catalogue import PROCEDURES
 from fieldlog.procedures.envelope import shape_error
+from fieldlog.procedures.fields import Duration, PressureReading
 from fieldlog.procedures.procedure import Problem
 from fieldlog.units import Quantity
 
@@ -31,11 +32,14 @@ class Field:
 
 @dataclass(frozen=True, slots=True)
 class Row:
-    """One line of a report: label, value as entered, and a note beside it."""
+    """One line of a report: label, value and unit as entered, which gauge, and a note beside it."""
 
     label: str
     value: str
+    unit: str = ""
     note: str = ""
+    gauge: str = ""  # uid
+    is_reading: bool = False  # a pressure read off a gauge
 
 
 def decode_body(kind: str, body: Mapping[str, Any]) -> msgspec.Struct:
@@ -130,22 +134,22 @@ def _rows(body: msgspec.Struct, names: Callable[[str], str], before: str = "") -
 
 
 def _struct_rows(value: msgspec.Struct, names: Callable[[str], str], label: str) -> Iterator[Row]:
-    if isinstance(value, Quantity):
-        yield Row(label, f"{value.value} {value.unit}", _reading_note(value, names))
+    if isinstance(value, PressureReading):
+        yield Row(label, value.value, value.unit, _reading_note(value), value.gauge or "", is_reading=True)
+    elif isinstance(value, Quantity):
+        yield Row(label, value.value, value.unit)
+    elif isinstance(value, Duration):
+        yield Row(label, str(value.seconds), "s", "" if value.how == "not stated" else f"by {value.how}")
     else:
         yield from _rows(value, names, f"{label}: ")
 
 
-def _reading_note(value: Quantity, names: Callable[[str], str]) -> str:
+def _reading_note(value: PressureReading) -> str:
     parts = []
-    names_of_reading = ("gauge", "low", "high", "pump_state")
-    gauge, low, high, pump_state = (getattr(value, name, None) for name in names_of_reading)
-    if gauge:
-        parts.append(f"gauge {names(gauge)}")
-    if low or high:
-        parts.append(f"needle {low or '?'} to {high or '?'}")
-    if pump_state:
-        parts.append(f"pump {pump_state}")
+    if value.low or value.high:
+        parts.append(f"needle swung {value.low or '?'} to {value.high or '?'}")
+    if value.pump_state:
+        parts.append(f"pump {value.pump_state}")
     return ", ".join(parts)
 
 
