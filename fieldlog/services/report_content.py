@@ -15,6 +15,7 @@ from fieldlog.records.history import Gauge, SupplyHistory, System
 from fieldlog.records.rules import RuleProfile
 from fieldlog.records.statement import SystemStatement
 from fieldlog.reports.content import (
+    Block,
     Facts,
     Finding,
     Items,
@@ -200,7 +201,7 @@ def _system_section(scope: Scope, history: SupplyHistory, system: System, said: 
     ]
     margin = deciding_margin(said)
     checks = what_to_check(said.checks)
-    blocks = [
+    blocks: list[Block] = [
         *pictures(history, system, said, scope.units),
         *([Items((demand_sentence(margin, scope.units),))] if margin is not None else []),
         *comparison_table(system, said, scope.units),
@@ -214,10 +215,8 @@ def _system_section(scope: Scope, history: SupplyHistory, system: System, said: 
 
 def _particulars(scope: Scope, history: SupplyHistory, system: System) -> Facts:
     reader = Reader(scope.units)
-    found = [
-        Row("Type", system.type),
-        Row("Water supply", history.supply.name, note=history.supply.kind.replace("_", " ")),
-    ]
+    kind = history.supply.kind.replace("_", " ")
+    found = [Row("Type", system.type), Row("Water supply", history.supply.name, note=kind)]
     if system.drain is not None and system.drain.size_in is not None:
         found.append(Row("Main drain", f"{system.drain.size_in:g}", "in.", system.drain.outlet))
     design = system.design

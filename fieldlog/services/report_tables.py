@@ -22,9 +22,11 @@ def comparison_table(system: System, said: SystemStatement, units: SiteUnits) ->
     if newest is None or not said.ten_percent:
         return
     rows = [("this test", *_cells(newest), "", f"#{newest.entry}")]
-    for one in said.ten_percent:
-        if one.entry in tests:
-            rows.append((_name(one), *_cells(tests[one.entry]), _fall(one), f"#{one.entry}"))
+    rows += [
+        (_name(one), *_cells(tests[one.entry]), _fall(one), f"#{one.entry}")
+        for one in said.ten_percent
+        if one.entry in tests
+    ]
     yield Table("Comparison", _columns("compared with", "this residual is", units), tuple(rows))
 
 
@@ -71,7 +73,7 @@ def _index(test: DrainTest) -> str:
 
 
 def _entry(test: DrainTest) -> str:
-    remarks = []
+    remarks: list[str] = []
     if test.standing != "routine":
         remarks.append(test.standing)
     if test.fully_open is False:
