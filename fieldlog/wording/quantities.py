@@ -7,7 +7,7 @@ enough digits are shown that the print agrees with the decision.
 from __future__ import annotations
 
 import math
-from collections.abc import Iterable
+from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
 from datetime import date
 from decimal import ROUND_CEILING, ROUND_FLOOR, ROUND_HALF_EVEN, Decimal
@@ -74,15 +74,14 @@ class Reader:
         """Return a length or height with its unit."""
         return f"{_trimmed(rounded(length_in(ft, self.units.length), 1))} {self.units.length}"
 
-    def digits_to_agree(self, smaller_psi: float, larger_psi: float) -> int:
-        """Return how many more digits print `larger_psi`, rounded down, not under `smaller_psi`, rounded up.
+    def digits_to_agree(self, parts_psi: Sequence[float], larger_psi: float) -> int:
+        """Return how many more digits print `larger_psi`, rounded down, not under the parts, each rounded up.
 
         Three when none do: then the two are equal for every purpose.
         """
         for finer in range(3):
-            up = self.bare_estimate(smaller_psi, "up", finer=finer)
-            down = self.bare_estimate(larger_psi, "down", finer=finer)
-            if _number(up) <= _number(down):
+            parts = [_number(self.bare_estimate(part, "up", finer=finer)) for part in parts_psi]
+            if sum(parts) <= _number(self.bare_estimate(larger_psi, "down", finer=finer)):
                 return finer
         return 3
 

@@ -101,14 +101,15 @@ def digits_of(statement: SystemStatement, units: SiteUnits) -> int:
     margin = deciding_margin(statement)
     if margin is None:
         return 0
-    reader = Reader(units)
-    wanted = [margin.rule_margin_psi]
-    if statement.blind_loss is not None and statement.blind_loss.loss_psi is not None:
-        wanted.append(statement.blind_loss.loss_psi + margin.rule_margin_psi)
-    met = [(psi, margin.median_psi) for psi in wanted if psi <= margin.median_psi]
-    if margin.rule_margin_psi <= margin.low_psi:
-        met.append((margin.rule_margin_psi, margin.low_psi))
-    return max((reader.digits_to_agree(smaller, larger) for smaller, larger in met), default=0)
+    blind = statement.blind_loss
+    compared: list[tuple[tuple[float, ...], float]] = [
+        ((margin.rule_margin_psi,), margin.low_psi),
+        ((margin.rule_margin_psi,), margin.median_psi),
+    ]
+    if blind is not None and blind.loss_psi is not None:
+        compared.append(((blind.loss_psi, margin.rule_margin_psi), margin.median_psi))
+    met = [(parts, larger) for parts, larger in compared if sum(parts) <= larger]
+    return max((Reader(units).digits_to_agree(parts, larger) for parts, larger in met), default=0)
 
 
 def margin_sentence(margin: Margin, units: SiteUnits, *, is_low_day: bool = False, finer: int = 0) -> str:

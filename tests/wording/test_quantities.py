@@ -34,7 +34,7 @@ def test_a_margin_is_never_rounded_up_nor_a_loss_down(psi: float, reader: Reader
 @given(pressures, pressures, st.sampled_from(READERS))
 def test_two_compared_pressures_are_printed_in_their_order(one: float, other: float, reader: Reader) -> None:
     smaller, larger = sorted((one, other))
-    finer = reader.digits_to_agree(smaller, larger)
+    finer = reader.digits_to_agree((smaller,), larger)
     if finer < 3:
         up, down = reader.estimate(smaller, "up", finer=finer), reader.estimate(larger, "down", finer=finer)
         assert number(up) <= number(down)

@@ -233,19 +233,38 @@ def test_no_number_of_a_margin_is_rounded_up(margin: Margin, units: SiteUnits, f
         assert float(text) <= pressure_in(truth_psi, units.pressure) + 1e-6
 
 
-@given(margins, st.floats(0.01, 60), st.sampled_from(UNITS))
-def test_the_print_of_a_blind_loss_within_the_margin_is_within_the_printed_margin(
-    margin: Margin, loss_psi: float, units: SiteUnits
+def shown_loss_and_margin(margin: Margin, loss_psi: float, units: SiteUnits) -> tuple[float, float]:
+    blind = BlindLoss(loss_psi, None, 600.0, 3)
+    finer = digits_of(replace(SAID, margin_low_day=margin, blind_loss=blind), units)
+    loss = re.search(r"up to (\S+)", blind_loss_sentence(blind, units, finer=finer))
+    available = re.search(r": (\S+) ", margin_sentence(margin, units, finer=finer))
+    assert loss is not None
+    assert available is not None
+    return float(loss[1]), float(available[1].replace("−", "-"))
+
+
+def test_more_digits_are_shown_where_whole_psi_would_contradict_the_statement() -> None:
+    margin = replace(MARGIN, median_psi=11.9, low_psi=6.9, rule_margin_psi=0.0)
+    assert shown_loss_and_margin(margin, 11.1, PSI) == (11.1, 11.9)
+    assert shown_loss_and_margin(margin, 8.2, PSI) == (9.0, 11.0)
+
+
+@given(margins, st.floats(0.004, 3), st.sampled_from(UNITS))
+def test_a_blind_loss_within_the_margin_is_printed_within_it(
+    margin: Margin, room_psi: float, units: SiteUnits
 ) -> None:
-    said = replace(SAID, margin_low_day=margin, blind_loss=BlindLoss(loss_psi, None, 600.0, 3))
-    finer = digits_of(said, units)
-    blind = blind_loss_sentence(BlindLoss(loss_psi, None, 600.0, 3), units, finer=finer)
-    shown_loss = float(re.search(r"up to (\S+)", blind).group(1))  # type: ignore[union-attr]
-    shown_margin = float(
-        re.search(r": (\S+) ", margin_sentence(margin, units, finer=finer)).group(1).replace("−", "-")  # type: ignore[union-attr]
-    )
-    room = pressure_in(margin.median_psi - loss_psi - margin.rule_margin_psi, units.pressure)
-    if room >= 0.3:
-        assert shown_loss <= shown_margin
-    elif room < 0:
-        assert shown_loss + pressure_in(margin.rule_margin_psi, units.pressure) >= shown_margin - 1e-6
+    loss_psi = margin.median_psi - margin.rule_margin_psi - room_psi
+    if loss_psi > 0:
+        loss, available = shown_loss_and_margin(margin, loss_psi, units)
+        rule = pressure_in(margin.rule_margin_psi, units.pressure)
+        assert loss + rule <= available + {"psi": 0.003, "bar": 0.0003, "kPa": 0.03}[units.pressure]
+
+
+@given(margins, st.floats(0.004, 30), st.sampled_from(UNITS))
+def test_a_blind_loss_above_the_margin_is_never_printed_within_it(
+    margin: Margin, excess_psi: float, units: SiteUnits
+) -> None:
+    loss_psi = margin.median_psi - margin.rule_margin_psi + excess_psi
+    if loss_psi > 0:
+        loss, available = shown_loss_and_margin(margin, loss_psi, units)
+        assert loss + pressure_in(margin.rule_margin_psi, units.pressure) >= available - 1e-6
