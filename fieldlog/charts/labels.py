@@ -157,7 +157,10 @@ def beside(point: Point, text: str, size: float, around: Surroundings, *, is_bol
     best: tuple[float, Text] | None = None
     for place in _places(point, width, size, around.room):
         label = Text(place, text, size, is_bold=is_bold, has_halo=True)
-        cost = around.cost(point, text_box(label), size)
+        box = Box(place[0], place[1] - _ASCENT * size, place[0] + width, place[1] + _DESCENT * size)
+        if best is not None and _length(point, _nearest(point, box)) / size >= best[0]:
+            continue
+        cost = around.cost(point, box, size)
         if cost is not None and (best is None or cost < best[0]):
             best = (cost, label)
     return [*_leader(point, text_box(best[1]), size), best[1]] if best else []
@@ -204,6 +207,8 @@ def _strokes(shape: Shape) -> list[tuple[Point, Point]]:
 
 def _crosses(box: Box, start: Point, end: Point) -> bool:
     """Return whether a stroke passes through a box (Liang and Barsky's clipping, 1984)."""
+    if min(start[0], end[0]) > box.right or max(start[0], end[0]) < box.left:
+        return False
     enter, leave = 0.0, 1.0
     run, rise = end[0] - start[0], end[1] - start[1]
     edges = (

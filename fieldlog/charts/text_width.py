@@ -11,6 +11,8 @@ from importlib.resources import files
 
 # Of a character the table does not hold; no letter of the scripts in it is wider than its capital W.
 _OTHER_EM = 1.0
+# More than any label of a chart shows.
+_MOST_CHARACTERS = 300
 
 
 @cache
@@ -35,7 +37,7 @@ def wrapped(
 ) -> tuple[str, ...]:
     """Return `text` in lines not wider than `width`; what is too long ends in an ellipsis."""
     lines: list[str] = []
-    for word in text.split():
+    for word in text[:_MOST_CHARACTERS].split():
         longer = f"{lines[-1]} {word}" if lines else word
         if lines and text_width(longer, size, is_bold=is_bold) <= width:
             lines[-1] = longer

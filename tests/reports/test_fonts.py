@@ -12,9 +12,7 @@ from reportlab.pdfbase.pdfmetrics import stringWidth
 from fieldlog.reports import fonts
 
 
-@pytest.mark.parametrize(
-    "text", ["66 psi", "Größe, ½ in., 4,5 bar", "Ω Σ μ", "Проверка", "→ ≤ ≥ − × ·", "█ ▲ □ ☐ ✓"]
-)
+@pytest.mark.parametrize("text", ["66 psi", "Größe, ½ in., 4,5 bar", "Ω Σ μ", "Проверка", "→ ≤ ≥ − × ·", "█ ▲ □ ☐ ✓"])
 def test_the_trades_signs_and_most_names_print_as_typed(text: str) -> None:
     assert fonts.printable(text) == text
 

@@ -53,9 +53,7 @@ def test_preflight_finds_the_older_twin_valid(drawn: bytes, preflight: Run, tmp_
     assert "valid PDF/A-1b" in result.stdout
 
 
-def test_preflight_objects_only_to_what_the_newer_part_allows(
-    archival: bytes, preflight: Run, tmp_path: Path
-) -> None:
+def test_preflight_objects_only_to_what_the_newer_part_allows(archival: bytes, preflight: Run, tmp_path: Path) -> None:
     (tmp_path / "report.pdf").write_bytes(archival)
     result = preflight(tmp_path / "report.pdf")
     assert set(re.findall(r"^\d[\d.]* : (.*)$", result.stdout, re.MULTILINE)) == {

@@ -1,0 +1,179 @@
+"""Tables on paper: widths by what stands in them, headings on every page, no row taller than a page."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable, Sequence
+from itertools import zip_longest
+from typing import Any
+
+from fieldlog.reports import fonts  # first: it sets reportlab's defaults  # isort: skip
+from reportlab.lib.styles import ParagraphStyle
+from reportlab.pdfbase.pdfmetrics import stringWidth
+from reportlab.platypus import Flowable, KeepTogether, Paragraph, Table, TableStyle
+
+from fieldlog.charts.scene import Ink
+from fieldlog.reports import content
+from fieldlog.reports.styles import (
+    CELL,
+    CELL_HEAD,
+    CELL_HEAD_NUMBER,
+    CELL_NUMBER,
+    PAINTS,
+    brief,
+    markup,
+    soft,
+)
+
+Cell = str | Flowable
+# reportlab's commands of a table's look: name, first cell, last cell, and what the name wants.
+Look = list[tuple[Any, ...]]
+_GAP = 4.0  # of white on each side of a cell's text
+# A text column is never made narrower than this, however much the others want.
+_LEAST_WIDTH = 34.0
+_EASE = 16.0
+# One row never takes more lines than this; what is longer goes on in rows of its own, so that pages can break.
+_MOST_LINES = 24
+
+# Room for the headings and three rows: less of a table is not begun at the foot of a page.
+_LEAST_BEGUN = 88.0
+
+
+class KeptStart(KeepTogether):
+    """Titles kept with what follows; of a table that is its first rows, not the whole of it."""
+
+    def __init__(self, flowables: Sequence[Flowable]) -> None:
+        super().__init__(list(flowables))
+        self._kept = tuple(flowables)
+
+    def split(self, aW: float, aH: float) -> list[Flowable]:  # noqa: N803  reportlab's names
+        """Return what goes on this page and what goes on the next."""
+        *titles, last = self._kept
+        if isinstance(last, Table):
+            heights = [flowable.wrapOn(self.canv, aW, aH)[1] + flowable.getSpaceAfter() for flowable in titles]
+            whole = last.wrapOn(self.canv, aW, aH)[1]
+            if sum(heights) + min(whole, _LEAST_BEGUN) <= aH:
+                return [*titles, last]
+        return list(super().split(aW, aH))
+
+
+# Of every table, even one of paragraphs only: an empty cell sets its font as well.
+FACE: Look = [("FONT", (0, 0), (-1, -1), fonts.REGULAR, CELL.fontSize, CELL.leading)]
+GRID: Look = [
+    *FACE,
+    ("TEXTCOLOR", (0, 0), (-1, -1), PAINTS[Ink.INK]),
+    ("VALIGN", (0, 0), (-1, -1), "TOP"),
+    ("LEFTPADDING", (0, 0), (-1, -1), _GAP),
+    ("RIGHTPADDING", (0, 0), (-1, -1), _GAP),
+    ("TOPPADDING", (0, 0), (-1, -1), 2.2),
+    ("BOTTOMPADDING", (0, 0), (-1, -1), 2.6),
+]
+
+
+def pieces(text: str, width: float, style: ParagraphStyle = CELL) -> list[str]:
+    """Return `text` in pieces of at most so many lines of `width`, broken at spaces where there are any."""
+    most = max(int(width / (0.62 * style.fontSize)), 1) * _MOST_LINES
+    rest, found = text, []
+    while len(rest) > most or rest.count("\n") > _MOST_LINES:
+        cut = min(most, *([place] if (place := _nth_break(rest)) else []))
+        space = rest.rfind(" ", cut // 2, cut)
+        cut = space if space > 0 else cut
+        found.append(rest[:cut])
+        rest = rest[cut:].lstrip(" ")
+    return [*found, rest]
+
+
+def _nth_break(text: str) -> int:
+    place = 0
+    for _ in range(_MOST_LINES):
+        place = text.find("\n", place) + 1
+        if not place:
+            return 0
+    return place
+
+
+def cell(text: str, width: float, style: ParagraphStyle = CELL) -> Cell:
+    """Return a cell: the bare text where it fits on a line, which is much cheaper, else a paragraph."""
+    printed = fonts.printable(text)
+    if "\n" not in printed and stringWidth(printed, style.fontName, style.fontSize) <= width - 2 * _GAP:
+        return printed
+    return Paragraph(markup(text), style)
+
+
+def cell_rows(texts: Sequence[str], widths: Sequence[float], styles: Sequence[ParagraphStyle]) -> list[list[Cell]]:
+    """Return one row of cells, or several where a text is too long for one."""
+    columns = [pieces(text, width - 2 * _GAP, style) for text, width, style in zip(texts, widths, styles, strict=True)]
+    return [
+        [cell(text, width, style) for text, width, style in zip(row, widths, styles, strict=True)]
+        for row in zip_longest(*columns, fillvalue="")
+    ]
+
+
+def table(block: content.Table, width: float) -> Table:
+    """Return a table of the content; every row has as many cells as there are columns."""
+    widths = _widths(block, width)
+    styles = [CELL_NUMBER if column.is_number else CELL for column in block.columns]
+    rows: list[list[Cell]] = [_head(block.columns)]
+    ends = []
+    for texts in block.rows:
+        fitted = (*texts, *[""] * len(widths))[: len(widths)]
+        rows += cell_rows(fitted, widths, styles)
+        ends.append(len(rows) - 1)
+    look: Look = [
+        *GRID,
+        ("VALIGN", (0, 0), (-1, 0), "BOTTOM"),
+        ("LINEBELOW", (0, 0), (-1, 0), 1.0, PAINTS[Ink.INK]),
+        *(("LINEBELOW", (0, end), (-1, end), 0.4, PAINTS[Ink.RULE]) for end in ends),
+        *(("ALIGN", (place, 1), (place, -1), "RIGHT") for place, c in enumerate(block.columns) if c.is_number),
+    ]
+    return Table(rows, colWidths=widths, repeatRows=1, style=TableStyle(look), hAlign="LEFT")
+
+
+def _head(columns: Iterable[content.Column]) -> list[Cell]:
+    return [
+        Paragraph(
+            markup(brief(column.heading, 60)) + (f"<br/>{soft(brief(column.unit, 20))}" if column.unit else ""),
+            CELL_HEAD_NUMBER if column.is_number else CELL_HEAD,
+        )
+        for column in columns
+    ]
+
+
+def _widths(block: content.Table, width: float) -> list[float]:
+    """Return the column widths: each what its longest text wants, the long ones sharing what is left."""
+    wanted = [
+        _wanted(column, [row[place] for row in block.rows if place < len(row)])
+        for place, column in enumerate(block.columns)
+    ]
+    if sum(wanted) <= width:
+        return _widened(wanted, width, [not column.is_number for column in block.columns])
+    return _squeezed(wanted, width)
+
+
+def _widened(wanted: Sequence[float], width: float, is_text: Sequence[bool]) -> list[float]:
+    """Return widths that sum to `width`: a little more for every column, the rest for those of text."""
+    spare = width - sum(wanted)
+    each = min(spare / len(wanted), _EASE) if any(is_text) else spare / len(wanted)
+    rest = spare - each * len(wanted)
+    text = sum(want for want, is_it in zip(wanted, is_text, strict=True) if is_it) or 1.0
+    return [want + each + (rest * want / text if is_it else 0.0) for want, is_it in zip(wanted, is_text, strict=True)]
+
+
+def _squeezed(wanted: Sequence[float], width: float) -> list[float]:
+    """Return widths that sum to `width`: who wants less than an even share gets it, the others share alike."""
+    fixed: dict[int, float] = {}
+    while True:
+        left = [place for place in range(len(wanted)) if place not in fixed]
+        share = (width - sum(fixed.values())) / max(len(left), 1)
+        small = {place: wanted[place] for place in left if wanted[place] <= share}
+        if not small:
+            return [fixed.get(place, max(share, 1.0)) for place in range(len(wanted))]
+        fixed |= small
+
+
+def _wanted(column: content.Column, texts: Iterable[str]) -> float:
+    words = [*column.heading.split(), column.unit]
+    head = max((stringWidth(fonts.printable(word), fonts.BOLD, CELL_HEAD.fontSize) for word in words), default=0.0)
+    # Only the beginning of a very long text is measured: it is wrapped in any case.
+    lines = (line for text in texts for line in fonts.printable(text[:400]).split("\n"))
+    body = max((stringWidth(line, CELL.fontName, CELL.fontSize) for line in lines), default=0.0)
+    return max(head, body, _LEAST_WIDTH - 2 * _GAP) + 2 * _GAP + 0.5
