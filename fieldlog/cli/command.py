@@ -26,9 +26,8 @@ class Refused(click.ClickException):
 
     def __init__(self, error: FieldlogError) -> None:
         super().__init__(error.message)
-        machine = isinstance(error, (ConfigError, SigningError, StorageError))
-        self.exit_code = NOT_AS_NEEDED if machine else CAN_NOT_BE_DONE
         self.code = error.code
+        self.is_of_machine = isinstance(error, (ConfigError, SigningError, StorageError))
 
     def show(self, file: IO[Any] | None = None) -> None:
         """Print the message to standard error."""
@@ -43,12 +42,15 @@ class FieldlogGroup(click.Group):
         try:
             return super().invoke(ctx)
         except FieldlogError as error:
-            raise Refused(error) from error
+            refused = Refused(error)
+            refused.show()
+            ctx.exit(NOT_AS_NEEDED if refused.is_of_machine else CAN_NOT_BE_DONE)
 
 
 @contextmanager
 def progress(label: str, length: int | None) -> Iterator[Callable[[int], None]]:
     """Give a function to call with the number of steps done; shows a bar on a terminal, nothing elsewhere."""
+    bar: Any
     with click.progressbar(length=length, label=label, file=sys.stderr, show_pos=True) as bar:
         yield bar.update
 

@@ -49,9 +49,7 @@ def person(name: str, licence_expires: datetime | None, sites: tuple[str, ...], 
 
 @click.command()
 @click.option("--once", is_flag=True, help="Make the instance and one sealed report, then stop.")
-@click.option(
-    "--folder", type=click.Path(path_type=Path, file_okay=False), help="Where (default: FIELDLOG_INSTANCE)."
-)
+@click.option("--folder", type=click.Path(path_type=Path, file_okay=False), help="Where (default: FIELDLOG_INSTANCE).")
 def demo(once: bool, folder: Path | None) -> None:  # noqa: FBT001  click passes flags by position of the name
     """Make an instance of invented sites with ten years of history, through to a sealed report.
 

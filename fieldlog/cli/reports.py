@@ -34,9 +34,7 @@ def statement(names: tuple[str, ...], as_json: bool, reasons: bool) -> None:  # 
 
 @click.command()
 @click.argument("visit", required=False)
-@click.option(
-    "--out", type=click.Path(path_type=Path, file_okay=False), help="Also write the PDF into this folder."
-)
+@click.option("--out", type=click.Path(path_type=Path, file_okay=False), help="Also write the PDF into this folder.")
 @click.option("--without-photos", is_flag=True, help="Close without photos not received; the report says so.")
 def report(visit: str | None, out: Path | None, without_photos: bool) -> None:  # noqa: FBT001
     """Make the sealed report of a signed-off VISIT (its uid); without one, list the visits."""

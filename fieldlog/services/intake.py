@@ -53,9 +53,7 @@ def take_in(
     with transaction(connection):
         known = _Known(connection)
         sorted_out = [_sorted_out(arrival, known, authority) for arrival in arrivals]
-        good = [
-            (one.envelope, one.arrival) for one in sorted_out if one.refusal is None and one.envelope is not None
-        ]
+        good = [(one.envelope, one.arrival) for one in sorted_out if one.refusal is None and one.envelope is not None]
         bad = [one for one in sorted_out if one.refusal is not None]
         refusals.keep(connection, [_to_keep(one, via, received_at) for one in bad])
         appended = log.append(connection, good, via, received_at)

@@ -46,13 +46,16 @@ def add_person(instance: Instance, particulars: Particulars, *, uid: str, at: da
     if people.login_of(instance.connection, particulars.login) is not None:
         raise ConflictError(f"login: {particulars.login} is taken; choose another name")
     _enter(instance, particulars, uid, at)
-    with transaction(instance.connection):
-        people.add_login(
-            instance.connection, people.Login(particulars.login, uid, particulars.role, timestamp(at))
-        )
-        for site in granted:
-            people.grant(instance.connection, uid, site, timestamp(at))
+    let_in(instance, uid, particulars.login, particulars.role, granted, at=at)
     return uid
+
+
+def let_in(instance: Instance, person: str, login: str, role: Role, sites_granted: list[str], *, at: datetime) -> None:
+    """Give a person on file a log-in name, a role and sites."""
+    with transaction(instance.connection):
+        people.add_login(instance.connection, people.Login(login, person, role, timestamp(at)))
+        for site in sites_granted:
+            people.grant(instance.connection, person, site, timestamp(at))
 
 
 def _enter(instance: Instance, particulars: Particulars, uid: str, at: datetime) -> None:

@@ -52,9 +52,7 @@ _SAID_ELSEWHERE = {ReasonCode.TEN_PERCENT, ReasonCode.MARGIN_MEASURED, ReasonCod
 _NOT_PRINTED = {"Performed on", "Done", "Standing", "Cautions ticked", "Tested at", "Did not recover"}
 
 
-def visit_report(
-    scope: Scope, made_at: datetime, revision: Revision | None, missing_photos: int = 0
-) -> VisitReport:
+def visit_report(scope: Scope, made_at: datetime, revision: Revision | None, missing_photos: int = 0) -> VisitReport:
     """Return the worded content of the report."""
     site_name = str(scope.site.body["name"])
     when = day(scope.on)
@@ -106,9 +104,7 @@ def _summary(scope: Scope, missing_photos: int) -> Iterator[Row]:
     visit, signers = scope.visit.body, scope.sign_off.body.signers
     yield Row("Date", day(scope.on))
     for signer in signers:
-        yield Row(
-            signer.role.capitalize(), signer.name, note=f"licence {signer.licence}" if signer.licence else ""
-        )
+        yield Row(signer.role.capitalize(), signer.name, note=f"licence {signer.licence}" if signer.licence else "")
     for label, value in (
         ("Weather", visit.weather), ("Fire pump", visit.pump_state), ("Monitoring told", visit.monitoring),
         ("Where water went", visit.discharge),
@@ -311,9 +307,7 @@ def _finding(scope: Scope, one: Typed) -> Finding:
     if one.entry.kind == "remedy":
         text = body.text or body.evidence or ""
         return Finding(f"Remedy, done {day(body.done_on)} by {body.by}", text, ())
-    decided = (
-        f"decided by {body.decided_by}" if body.decided_by else f"proposed by {body.proposed_by}, not decided yet"
-    )
+    decided = f"decided by {body.decided_by}" if body.decided_by else f"proposed by {body.proposed_by}, not decided yet"
     told = [Row("Told", notified.who, note=notified.how or "") for notified in body.notified]
     where = scope.name_of(one.entry.system) if one.entry.system else scope.name_of(str(one.entry.site))
     return Finding(f"{body.class_.capitalize()} ({decided}) · {where}", body.text, tuple(told))
@@ -332,9 +326,7 @@ def _cautions(scope: Scope) -> Iterator[str]:
 
 def _standards(scope: Scope) -> Iterator[str]:
     profiles = {
-        profile.uid: profile
-        for history in scope.histories
-        for profile in judging.profiles_in_force(history, scope.on)
+        profile.uid: profile for history in scope.histories for profile in judging.profiles_in_force(history, scope.on)
     }
     if not profiles:
         yield notices.STANDARD_NOT_RECORDED

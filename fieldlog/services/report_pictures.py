@@ -43,20 +43,14 @@ def _supply_picture(history: SupplyHistory, system: System, as_of: date, units: 
         curves=(_curve(measured, demand.outside_gpm, wanted_gpm, units),),
         flow_unit=units.flow,
         pressure_unit=units.pressure,
-        demand=FlowPoint(
-            flow_in(demand.flow_gpm, units.flow), pressure_in(demand.required_psi, units.pressure), label
-        ),
+        demand=FlowPoint(flow_in(demand.flow_gpm, units.flow), pressure_in(demand.required_psi, units.pressure), label),
     )
     test = measured.flow_test
     basis = (
-        "the design record; no flow test measured it"
-        if test is None
-        else f"the flow test of {day(test.performed_on)}"
+        "the design record; no flow test measured it" if test is None else f"the flow test of {day(test.performed_on)}"
     )
     hose = f" with {reader.flow(demand.outside_gpm)} of outside hose flowing" if demand.outside_gpm > 0 else ""
-    caption = (
-        f"By {basis}, brought to the base of riser{hose}. Dashed beyond the flow that was measured. {ESTIMATE}"
-    )
+    caption = f"By {basis}, brought to the base of riser{hose}. Dashed beyond the flow that was measured. {ESTIMATE}"
     return Picture("Supply against the recorded demand", chart, caption)
 
 
@@ -93,9 +87,7 @@ def _history_picture(system: System, said: SystemStatement, units: SiteUnits) ->
         lines=tuple(_lines(tests, said, units)),
         expected=tuple(_expected(tests, said, units)),
     )
-    caption = (
-        "Every main drain test on file; hollow marks can't be compared (drain not fully open, or not full flow)."
-    )
+    caption = "Every main drain test on file; hollow marks can't be compared (drain not fully open, or not full flow)."
     return Picture("Main drain tests over the years", chart, caption)
 
 

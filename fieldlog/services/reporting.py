@@ -78,9 +78,7 @@ class Checked:
         yield "file: made by this instance" if self.is_on_file else "file: not among the reports made here"
 
 
-def make_report(
-    instance: Instance, visit: str, at: datetime, *, accept_missing_photos: bool = False
-) -> MadeReport:
+def make_report(instance: Instance, visit: str, at: datetime, *, accept_missing_photos: bool = False) -> MadeReport:
     """Make the next revision of a visit's report, seal and file it, and return it.
 
     The same sign-off twice gives the report that is on file.
@@ -108,9 +106,7 @@ def make_report(
     return _seal_and_file(instance, scope, content, len(earlier) + 1, at)
 
 
-def _seal_and_file(
-    instance: Instance, scope: Scope, content: VisitReport, revision: int, at: datetime
-) -> MadeReport:
+def _seal_and_file(instance: Instance, scope: Scope, content: VisitReport, revision: int, at: datetime) -> MadeReport:
     ensure_sealing_key(instance, at)
     unsigned = pages.report_pdf(content)
     sealed = seal.seal(unsigned, seal.load_signer(instance.settings.keys), at, reason=content.heading)
@@ -195,9 +191,7 @@ def _revision(earlier: list[StoredReport], scope: Scope) -> Revision | None:
     if not earlier:
         return None
     reason = scope.sign_off.entry.reason or "signed again"
-    return Revision(
-        f"revision {len(earlier) + 1}", f"revision {earlier[-1].revision} ({earlier[-1].sha256})", reason
-    )
+    return Revision(f"revision {len(earlier) + 1}", f"revision {earlier[-1].revision} ({earlier[-1].sha256})", reason)
 
 
 def _missing_photos(instance: Instance, scope: Scope) -> list[str]:

@@ -1,0 +1,102 @@
+"""The whole story: particulars, ten years of visits, the last one signed off and reported."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Iterator
+from dataclasses import dataclass
+from datetime import date, datetime
+
+from fieldlog.clock import timestamp
+from fieldlog.demo import registry, scenario
+from fieldlog.demo.events import write_events
+from fieldlog.demo.pen import ORGANISATION, Pen, uid_of
+from fieldlog.demo.plan import SitePlan
+from fieldlog.demo.visits import last_visit, visit_days, write_visit
+from fieldlog.errors import ConflictError
+from fieldlog.procedures.organisation import Organisation
+from fieldlog.services import instance, intake, judging, people, reporting
+from fieldlog.services.instance import Instance
+from fieldlog.storage import entries, log
+
+_REPORTED = "harbour"
+
+
+@dataclass(frozen=True, slots=True)
+class DemoOutcome:
+    """What was made, and where it is."""
+
+    folder: str
+    entries: int
+    systems: int
+    report: str
+    head: str
+
+    def lines(self) -> Iterator[str]:
+        """Return what to tell the one who asked for it."""
+        yield f"instance: {self.folder}"
+        yield f"log: {self.entries} entries, head {self.head}"
+        yield f"sealed report: {self.report}"
+        yield f"statements on {self.systems} systems: FIELDLOG_INSTANCE={self.folder} fieldlog statement"
+        yield f"check the report: FIELDLOG_INSTANCE={self.folder} fieldlog verify {self.report}"
+        yield "Every site, person and reading in it is invented."
+
+
+def steps(as_of: date) -> int:
+    """Return how many steps `build` takes, for a progress bar."""
+    return sum(1 + len(visit_days(site, as_of)) for site in scenario.sites(as_of)) + 2
+
+
+def build(made: Instance, at: datetime, progress: Callable[[int], None]) -> DemoOutcome:
+    """Fill a new instance with the scenario and return what was made."""
+    as_of = at.date()
+    enter_history(made, at, progress)
+    judging.judge_due(made.connection, as_of)
+    progress(1)
+    site = next(site for site in scenario.sites(as_of) if site.key == _REPORTED)
+    report = reporting.make_report(made, uid_of(last_visit(site, as_of)), at)
+    progress(1)
+    head = log.head(made.connection)
+    return DemoOutcome(
+        folder=str(made.settings.instance),
+        entries=head.number,
+        systems=len(entries.in_force_of_kind(made.connection, "system")),
+        report=str(report.path),
+        head=head.link,
+    )
+
+
+def enter_history(made: Instance, at: datetime, progress: Callable[[int], None]) -> None:
+    """Enter the organisation, its people, its sites and ten years of visits."""
+    as_of = at.date()
+    body = Organisation(name=scenario.ORGANISATION, address="7 Example Yard", licence="firm licence DEMO-0")
+    instance.found_organisation(made, body, uid=ORGANISATION, at=at)
+    pen = Pen()
+    registry.write_people(pen, scenario.ago(as_of, 10.3))
+    _hand_over(made, pen, at)
+    for site in scenario.sites(as_of):
+        registry.write_site(pen, site, as_of)
+        _hand_over(made, pen, at)
+        progress(1)
+        for on in visit_days(site, as_of):
+            write_visit(pen, site, on, as_of)
+            _hand_over(made, pen, at)
+            progress(1)
+        write_events(pen, site, as_of)
+        _hand_over(made, pen, at)
+    _let_in(made, at)
+
+
+def _hand_over(made: Instance, pen: Pen, at: datetime) -> None:
+    result = intake.take_in(made.connection, pen.taken(), "import", timestamp(at))
+    for refusal in result.refused:
+        raise ConflictError(f"the scenario's entry {refusal.uid} was refused: {refusal.message}")
+    if result.waiting:
+        raise ConflictError(f"the scenario's entries {', '.join(result.waiting)} wait for others")
+
+
+def _let_in(made: Instance, at: datetime) -> None:
+    """Give the scenario's people their log-in names and sites."""
+    sites: list[SitePlan] = list(scenario.sites(at.date()))
+    for key, _, role, _ in scenario.PEOPLE:
+        granted = sites[:1] if role == "owner" else [] if role == "office" else sites
+        people.let_in(made, uid_of(key), key, role, [uid_of(site.key) for site in granted], at=at)
