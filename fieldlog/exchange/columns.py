@@ -100,9 +100,7 @@ class Target:
         for choice in self.choices:
             if folded_name(choice) == folded:
                 return choice
-        raise InputError(
-            f"{header}: {typed!r} is none of {', '.join(self.choices)}; write one of them", field=header
-        )
+        raise InputError(f"{header}: {typed!r} is none of {', '.join(self.choices)}; write one of them", field=header)
 
     def _plain(self, typed: str, header: str) -> object:
         return self.plain(typed, header) if self.plain is not None else typed
@@ -142,9 +140,7 @@ def kind_named(typed: str) -> str:
 @cache
 def _kind_names() -> dict[str, str]:
     return {
-        folded_name(name): kind
-        for kind in KINDS
-        for name in (kind, PROCEDURES[kind].label, *_KINDS_ALSO.get(kind, ()))
+        folded_name(name): kind for kind in KINDS for name in (kind, PROCEDURES[kind].label, *_KINDS_ALSO.get(kind, ()))
     }
 
 

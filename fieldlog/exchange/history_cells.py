@@ -14,6 +14,7 @@ _Value = TypeVar("_Value")
 
 # What offices write where there is nothing.
 _MISSING = {"", "-", "--", "–", "—", "n/a", "#n/a", "na", "n.a.", "nil", "?"}
+_LONGEST_MESSAGE = 450
 _MOST_REMEMBERED = 10_000
 
 
@@ -61,7 +62,9 @@ class RowCells:
             return None
 
     def refuse(self, column: str, message: str) -> None:
-        """Note what is wrong with a column."""
+        """Note what is wrong with a column; a long cell is shown by its beginning, the mend stays whole."""
+        if len(message) > _LONGEST_MESSAGE:
+            message = f"{message[:200]} … {message[-200:]}"
         self.problems.append((column, message))
 
     def has_problem(self, *columns: str) -> bool:

@@ -70,9 +70,7 @@ class HistoryFile:
         self._rows = rows
         self._options = options
 
-    def rows(
-        self, names: Names, author: str, is_on_file: Callable[[str], bool] | None = None
-    ) -> Iterator[RowResult]:
+    def rows(self, names: Names, author: str, is_on_file: Callable[[str], bool] | None = None) -> Iterator[RowResult]:
         """Yield what each row becomes, in the order of the file; `is_on_file` is asked with each entry's uid."""
         options = self._options
         builder = RowBuilder(self.layout.columns, Lookup(names), author, options)

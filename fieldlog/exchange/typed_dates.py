@@ -10,6 +10,7 @@ from fieldlog.errors import InputError
 
 Order = Literal["iso", "dmy", "mdy"]
 
+_LONGEST = 60  # characters; the patterns below are quick on short text only
 _MONTHS = ("jan", "feb", "mar", "apr", "may", "jun", "jul", "aug", "sep", "oct", "nov", "dec")
 _LONG_MONTHS = (
     "january", "february", "march", "april", "may", "june", "july", "august", "september", "october", "november",
@@ -33,6 +34,8 @@ def typed_date(typed: str, order: Order) -> date:
     InputError
         If it is none, or could be read in two ways; says what to write.
     """
+    if len(typed) > _LONGEST:
+        raise InputError(f"{typed[:_LONGEST]!r}… is no date; write it as year-month-day, such as 2019-03-12")
     text = _MIDNIGHT.sub("", typed.strip())
     if found := _ISO.fullmatch(text):
         return _date(typed, int(found[1]), int(found[3]), int(found[4]))
@@ -57,8 +60,7 @@ def _in_order(typed: str, order: Order, parts: tuple[int, int, int]) -> date:
     first, second, year = parts
     if order == "iso":
         raise InputError(
-            f"{typed!r}: day or month first? Say --dates dmy or --dates mdy for the whole file, "
-            "or write year-month-day"
+            f"{typed!r}: day or month first? Say --dates dmy or --dates mdy for the whole file, or write year-month-day"
         )
     day, month = (first, second) if order == "dmy" else (second, first)
     if month > 12 >= day:

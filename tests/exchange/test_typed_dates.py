@@ -54,6 +54,7 @@ def test_numbers_are_read_in_the_order_that_was_said(typed: str, order: Order) -
         ("2019-03-12 14:30", "iso", "no date"),
         ("spring", "dmy", "no date"),
         ("", "dmy", "no date"),
+        ("1" + " " * 60_000, "dmy", "no date"),
         ("0000-03-12", "iso", "not in the calendar"),
     ],
 )
