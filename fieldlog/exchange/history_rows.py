@@ -20,11 +20,12 @@ from fieldlog.procedures.catalogue import PROCEDURES
 from fieldlog.procedures.compose import compose, import_uid
 from fieldlog.procedures.main_drain_test import MainDrainTest
 from fieldlog.procedures.questions import Earlier, drain_test_questions
-from fieldlog.units import SiteUnits
+from fieldlog.units import Pressure, SiteUnits
 from fieldlog.wording.quantities import day
 from fieldlog.wording.questions import question_sentence
 
 _NOTHING_EARLIER = Earlier()
+_PSI_IN = {unit: float(size) for unit, size in Pressure.sizes.items()}
 _ANY_UNITS = SiteUnits()
 
 
@@ -110,6 +111,19 @@ def _notes(body: msgspec.Struct, repeat: int) -> tuple[str, ...]:
     notes = []
     if repeat > 1:
         notes.append(f"equal to {repeat - 1} row{'s' if repeat > 2 else ''} above; kept as a test of its own")
-    if isinstance(body, MainDrainTest):
+    if isinstance(body, MainDrainTest) and _may_be_odd(body):
         notes += [question_sentence(one, _ANY_UNITS) for one in drain_test_questions(body, _NOTHING_EARLIER)]
     return tuple(notes)
+
+
+def _may_be_odd(body: MainDrainTest) -> bool:
+    """Return whether the exact questions are worth their time: most rows of a long history are not odd."""
+    before, residual, after, system_side = (
+        float(reading.value) * _PSI_IN[reading.unit] if reading is not None else None
+        for reading in (body.static_before, body.residual, body.static_after, body.system_side_before)
+    )
+    if before is None or residual is None or system_side is not None:
+        return True
+    if body.fully_open is False or body.took_full_flow is False:
+        return True
+    return min(before, residual) <= 0 or residual > 0.99 * before or (after is not None and after < 0.91 * before)

@@ -292,6 +292,11 @@ def test_odd_but_possible_readings_are_kept_and_noted() -> None:
     result = only(header, "Wet system 2,main drain,2019-03-12,55,66")
     assert result.uid
     assert any("Residual is above static before" in note for note in result.notes)
+    after = only(f"{header},static after (psi)", "Wet system 2,main drain,2019-03-12,66,55,59.3")
+    assert any("ten percent below static before" in note for note in after.notes)
+    partly = only(f"{header},fully open", "Wet system 2,main drain,2019-03-12,66,55,no")
+    assert any("will not be compared" in note for note in partly.notes)
+    assert only(header, "Wet system 2,main drain,2019-03-12,66,55").notes == ()
 
 
 def test_what_a_row_becomes_is_said_for_the_dry_run() -> None:
