@@ -39,7 +39,7 @@ class Pen:
 
     arrivals: list[Arrival] = field(default_factory=list)
 
-    def write(self, kind: str, key: str, body: msgspec.Struct, on: date, *, author: str = "", **rest: Any) -> Written:
+    def write(self, kind: str, key: str, body: msgspec.Struct, on: date, *, author: str = "", **rest: Any) -> Written:  # noqa: ANN401
         """Compose an entry of the day `on` and keep it for the next batch."""
         uid = uid_of(key)
         text = compose(

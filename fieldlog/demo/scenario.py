@@ -95,7 +95,7 @@ def _mill_lane(as_of: date) -> SitePlan:
             ),
             SystemPlan(
                 "mill-3", "Wet system 3", "wet", "mill-main", TrueSystem(_feed(5.0), 38.0),
-                _psi_gauge("G-23", "10"), DemandPlan(520, 50), Statement.UNPROVEN,
+                _psi_gauge("G-23", "5"), DemandPlan(600, 52), Statement.UNPROVEN,
             ),
             SystemPlan(
                 "mill-4", "Preaction system 4", "preaction", "mill-main", TrueSystem(_feed(5.0), 39.0),

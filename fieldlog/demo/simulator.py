@@ -106,7 +106,7 @@ def drain_open(static_psi: float, resistance: float, drain_k: float) -> Flowing:
 
 def resistance_of(loss_psi: float, flow_gpm: float) -> float:
     """Return the resistance that loses so much at a flow."""
-    return loss_psi / flow_gpm**FLOW_EXPONENT
+    return float(loss_psi / flow_gpm**FLOW_EXPONENT)
 
 
 def decimal_text(value: float, step: float) -> str:

@@ -14,6 +14,7 @@ from fieldlog.demo.plan import SitePlan
 from fieldlog.demo.visits import last_visit, visit_days, write_visit
 from fieldlog.errors import ConflictError
 from fieldlog.procedures.organisation import Organisation
+from fieldlog.records.entries import Via
 from fieldlog.services import instance, intake, judging, people, reporting
 from fieldlog.services.instance import Instance
 from fieldlog.storage import entries, log
@@ -79,15 +80,15 @@ def enter_history(made: Instance, at: datetime, progress: Callable[[int], None])
         progress(1)
         for on in visit_days(site, as_of):
             write_visit(pen, site, on, as_of)
-            _hand_over(made, pen, at)
+            _hand_over(made, pen, at, "form" if on == visit_days(site, as_of)[-1] else "import")
             progress(1)
         write_events(pen, site, as_of)
         _hand_over(made, pen, at)
     _let_in(made, at)
 
 
-def _hand_over(made: Instance, pen: Pen, at: datetime) -> None:
-    result = intake.take_in(made.connection, pen.taken(), "import", timestamp(at))
+def _hand_over(made: Instance, pen: Pen, at: datetime, via: Via = "import") -> None:
+    result = intake.take_in(made.connection, pen.taken(), via, timestamp(at))
     for refusal in result.refused:
         raise ConflictError(f"the scenario's entry {refusal.uid} was refused: {refusal.message}")
     if result.waiting:

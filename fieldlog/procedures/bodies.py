@@ -1,11 +1,10 @@
-"""Bodies from JSON and to what is made of their types: fields with labels, report rows, columns, JSON schema."""
+"""Bodies from JSON, and what follows from their types: fields with labels and JSON schema."""
 
 from __future__ import annotations
 
 import types
-from collections.abc import Callable, Iterator, Mapping
+from collections.abc import Mapping
 from dataclasses import dataclass
-from datetime import date
 from typing import Annotated, Any, Literal, Union, get_args, get_origin, get_type_hints
 
 import msgspec
@@ -13,9 +12,7 @@ import msgspec
 from fieldlog.errors import InputError
 from fieldlog.procedures.catalogue import PROCEDURES
 from fieldlog.procedures.envelope import shape_error
-from fieldlog.procedures.fields import Duration, PressureReading
 from fieldlog.procedures.procedure import Problem
-from fieldlog.units import Quantity
 
 
 @dataclass(frozen=True, slots=True)
@@ -28,18 +25,6 @@ class Field:
     type: Any
     is_required: bool
     choices: tuple[str, ...] = ()
-
-
-@dataclass(frozen=True, slots=True)
-class Row:
-    """One line of a report: label, value and unit as entered, which gauge, and a note beside it."""
-
-    label: str
-    value: str
-    unit: str = ""
-    note: str = ""
-    gauge: str = ""  # uid
-    is_reading: bool = False  # a pressure read off a gauge
 
 
 def decode_body(kind: str, body: Mapping[str, Any]) -> msgspec.Struct:
@@ -73,11 +58,6 @@ def fields(body_type: type[msgspec.Struct]) -> list[Field]:
     """Return the fields of a body type in the order of the work."""
     hints = get_type_hints(body_type, include_extras=True)
     return [_field(info, hints[info.name]) for info in msgspec.structs.fields(body_type)]
-
-
-def rows(body: msgspec.Struct, names: Callable[[str], str] = lambda uid: uid) -> list[Row]:
-    """Return what was entered as report rows; `names` tells by which name a uid goes."""
-    return list(_rows(body, names))
 
 
 def json_schema(kind: str) -> dict[str, Any]:
@@ -116,50 +96,3 @@ def _metas(hint: Any) -> tuple[list[msgspec.Meta], Any]:  # noqa: ANN401
 
 def _choices(bare: Any) -> tuple[str, ...]:  # noqa: ANN401
     return get_args(bare) if get_origin(bare) is Literal else ()
-
-
-def _rows(body: msgspec.Struct, names: Callable[[str], str], before: str = "") -> Iterator[Row]:
-    for field in fields(type(body)):
-        value = getattr(body, field.name)
-        label = f"{before}{field.label}"
-        if value is None or value in ((), {}):
-            continue
-        if isinstance(value, tuple) and isinstance(value[0], msgspec.Struct):
-            for index, item in enumerate(value, start=1):
-                yield from _struct_rows(item, names, f"{label} {index}" if len(value) > 1 else label)
-        elif isinstance(value, msgspec.Struct):
-            yield from _struct_rows(value, names, label)
-        else:
-            yield Row(label, _text(value, names))
-
-
-def _struct_rows(value: msgspec.Struct, names: Callable[[str], str], label: str) -> Iterator[Row]:
-    if isinstance(value, PressureReading):
-        yield Row(label, value.value, value.unit, _reading_note(value), value.gauge or "", is_reading=True)
-    elif isinstance(value, Quantity):
-        yield Row(label, value.value, value.unit)
-    elif isinstance(value, Duration):
-        yield Row(label, str(value.seconds), "s", "" if value.how == "not stated" else f"by {value.how}")
-    else:
-        yield from _rows(value, names, f"{label}: ")
-
-
-def _reading_note(value: PressureReading) -> str:
-    parts = []
-    if value.low or value.high:
-        parts.append(f"needle swung {value.low or '?'} to {value.high or '?'}")
-    if value.pump_state:
-        parts.append(f"pump {value.pump_state}")
-    return ", ".join(parts)
-
-
-def _text(value: Any, names: Callable[[str], str]) -> str:  # noqa: ANN401  any plain value
-    if isinstance(value, bool):
-        return "yes" if value else "no"
-    if isinstance(value, date):
-        return value.isoformat()
-    if isinstance(value, tuple):
-        return ", ".join(_text(item, names) for item in value)
-    if isinstance(value, dict):
-        return ", ".join(f"{key} {item}" for key, item in value.items())
-    return names(str(value))

@@ -31,9 +31,9 @@ class DesignRecord(Body, frozen=True, kw_only=True):
     """The record as it stands; hazard and occupancy are not checked."""
 
     demand: Annotated[Demand, Meta(title="Demand at base of riser")] | None = None
-    includes_inside_hose: Annotated[
-        Literal["yes", "no", "unknown"], Meta(title="Demand flow includes inside hose")
-    ] = "unknown"
+    includes_inside_hose: Annotated[Literal["yes", "no", "unknown"], Meta(title="Demand flow includes inside hose")] = (
+        "unknown"
+    )
     hose_inside: Annotated[Flow, Meta(title="Hose allowance inside")] | None = None
     hose_outside: Annotated[Flow, Meta(title="Hose allowance outside")] | None = None
     hose_point: Annotated[Line, Meta(title="Where outside hose is drawn")] | None = None

@@ -14,9 +14,7 @@ from fieldlog.procedures.procedure import Body, Procedure
 class Event(Body, frozen=True, kw_only=True):
     """One event with what it is about."""
 
-    what: Annotated[
-        Literal["report made", "export", "grant changed", "device changed", "restored"], Meta(title="What")
-    ]
+    what: Annotated[Literal["report made", "export", "grant changed", "device changed", "restored"], Meta(title="What")]
     about: Annotated[Uid, Meta(title="About")] | None = None
     sha256: Annotated[Sha256, Meta(title="SHA-256 of the file")] | None = None
     unsigned_sha256: Annotated[Sha256, Meta(title="SHA-256 before sealing")] | None = None

@@ -27,12 +27,10 @@ class PressureReading(Pressure, frozen=True, kw_only=True):
     """A pressure as read: which gauge, and the extremes of a swinging needle."""
 
     gauge: Annotated[Uid, Meta(title="Gauge")] | None = None
-    low: (
-        Annotated[str, Meta(title="Low of the swing", pattern=r"^-?(0|[1-9][0-9]{0,8})(\.[0-9]{1,9})?$")] | None
-    ) = None
-    high: (
-        Annotated[str, Meta(title="High of the swing", pattern=r"^-?(0|[1-9][0-9]{0,8})(\.[0-9]{1,9})?$")] | None
-    ) = None
+    low: Annotated[str, Meta(title="Low of the swing", pattern=r"^-?(0|[1-9][0-9]{0,8})(\.[0-9]{1,9})?$")] | None = None
+    high: Annotated[str, Meta(title="High of the swing", pattern=r"^-?(0|[1-9][0-9]{0,8})(\.[0-9]{1,9})?$")] | None = (
+        None
+    )
     pump_state: Annotated[PumpState, Meta(title="Pump at this reading")] | None = None
 
 
@@ -40,9 +38,7 @@ class Duration(Body, frozen=True, kw_only=True):
     """Seconds and how they were taken."""
 
     seconds: Annotated[int, Meta(title="Seconds", ge=0, le=86400)]
-    how: Annotated[Literal["stop clock", "watch", "panel log", "not stated"], Meta(title="How taken")] = (
-        "not stated"
-    )
+    how: Annotated[Literal["stop clock", "watch", "panel log", "not stated"], Meta(title="How taken")] = "not stated"
 
 
 class ValveFound(Body, frozen=True, kw_only=True):

@@ -59,9 +59,7 @@ def _problems(body: FlowTest) -> list[Problem]:
     found = common_problems(body) + missing(body, "static", "points")
     for index, point in enumerate(body.points):
         if not point.outlets and point.flow is None:
-            found.append(
-                Problem(f"points[{index}].flow", "give the outlets with their pitot readings, or the flow")
-            )
+            found.append(Problem(f"points[{index}].flow", "give the outlets with their pitot readings, or the flow"))
         if point.outlets and point.flow is not None:
             found.append(Problem(f"points[{index}].flow", "give either outlets or a flow, not both"))
     return found

@@ -25,9 +25,7 @@ class Gauge(Body, frozen=True, kw_only=True):
     ] = ()
     range: Annotated[Pressure, Meta(title="Range, full scale")] | None = None
     division: Annotated[Pressure, Meta(title="Smallest division")] | None = None
-    grade: Annotated[Literal["4A", "3A", "2A", "1A", "A", "B", "C", "D"], Meta(title="Accuracy grade")] | None = (
-        None
-    )
+    grade: Annotated[Literal["4A", "3A", "2A", "1A", "A", "B", "C", "D"], Meta(title="Accuracy grade")] | None = None
     elevation: Annotated[Length, Meta(title="Elevation")] | None = None
     installed_on: Annotated[Day, Meta(title="Installed on")] | None = None
     replaces: Annotated[Uid, Meta(title="Replaces")] | None = None

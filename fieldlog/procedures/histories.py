@@ -73,9 +73,7 @@ def typed_entry(entry: Entry) -> Typed:
 class _Reader:
     """Reads the entries of one site for one of its supplies."""
 
-    def __init__(
-        self, by_kind: Mapping[str, Sequence[Typed]], versions: Mapping[str, Entry], supply: Typed
-    ) -> None:
+    def __init__(self, by_kind: Mapping[str, Sequence[Typed]], versions: Mapping[str, Entry], supply: Typed) -> None:
         self.by_kind = by_kind
         self.versions = versions
         self.supply = supply
@@ -177,9 +175,7 @@ class _Reader:
             system,
             drain_tests=of("main_drain_test", drain_test),
             alarm_tests=of("inspectors_test", alarm_test),
-            forward_flow_tests=tuple(
-                test for test in of("forward_flow_test", forward_flow_test) if test is not None
-            ),
+            forward_flow_tests=tuple(test for test in of("forward_flow_test", forward_flow_test) if test is not None),
             valve_status_tests=of("valve_status_test", valve_status_test),
             gauge_readings=self._readings(system.gauges),
         )

@@ -35,9 +35,7 @@ class InspectorsTest(AnyTest, frozen=True, kw_only=True):
     retard_setting: Annotated[Duration, Meta(title="Retard setting")] | None = None
     static: Annotated[PressureReading, Meta(title="Riser gauge, static")] | None = None
     flowing: Annotated[PressureReading, Meta(title="Riser gauge, flowing")] | None = None
-    connection_flowing: Annotated[PressureReading, Meta(title="Gauge at the test connection, flowing")] | None = (
-        None
-    )
+    connection_flowing: Annotated[PressureReading, Meta(title="Gauge at the test connection, flowing")] | None = None
     air_at_start: Annotated[PressureReading, Meta(title="Air at start")] | None = None
     water_at_start: Annotated[PressureReading, Meta(title="Water at start")] | None = None
     air_at_trip: Annotated[PressureReading, Meta(title="Air at trip")] | None = None

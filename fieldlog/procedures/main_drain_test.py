@@ -25,16 +25,14 @@ class MainDrainTest(AnyTest, frozen=True, kw_only=True):
     drain: Annotated[Line, Meta(title="Drain")] | None = None
     at: Annotated[Literal["lead-in", "riser"], Meta(title="Tested at")] | None = None
     serves: Annotated[tuple[Uid, ...], Meta(title="Systems this test serves")] = ()
-    source: Annotated[
-        Literal["witnessed", "information sign", "old record"], Meta(title="Source of the readings")
-    ] = "witnessed"
+    source: Annotated[Literal["witnessed", "information sign", "old record"], Meta(title="Source of the readings")] = (
+        "witnessed"
+    )
     static_before: (
         Annotated[PressureReading, Meta(title="Static before", description="supply gauge, settled")] | None
     ) = None
     residual: (
-        Annotated[
-            PressureReading, Meta(title="Residual, full flow", description="drain fully open, running clear")
-        ]
+        Annotated[PressureReading, Meta(title="Residual, full flow", description="drain fully open, running clear")]
         | None
     ) = None
     return_seconds: Annotated[Duration, Meta(title="Time to return")] | None = None
@@ -55,9 +53,7 @@ class MainDrainTest(AnyTest, frozen=True, kw_only=True):
     drain_unchanged: Annotated[bool, Meta(title="Drain unchanged since last test")] | None = None
     confirmed: Annotated[Literal["no", "second look", "second gauge"], Meta(title="Reading confirmed by")] = "no"
     drain_pitot: Annotated[Pressure, Meta(title="Pitot reading at the drain outlet")] | None = None
-    conditions: Annotated[Line, Meta(title="Conditions", description="other large use of water seen")] | None = (
-        None
-    )
+    conditions: Annotated[Line, Meta(title="Conditions", description="other large use of water seen")] | None = None
 
 
 def _problems(body: MainDrainTest) -> list[Problem]:

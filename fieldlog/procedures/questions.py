@@ -69,9 +69,7 @@ def _about_order(readings: Mapping[str, PressureReading]) -> list[Question]:
     if before is not None and after is not None and after.exact() < before.exact() * Fraction(9, 10):
         found.append(Question("static_after", "static_after_below_before"))
     system_side = readings.get("system_side_before")
-    if (
-        before is not None and system_side is not None and system_side.psi > 175
-    ):  # usual relief setting, from memory
+    if before is not None and system_side is not None and system_side.psi > 175:  # usual relief setting, from memory
         found.append(Question("system_side_before", "above_relief_setting"))
     return found
 

@@ -59,9 +59,7 @@ def feed(body: SystemBody) -> tuple[PipeRun | StatedLoss, ...]:
 
 
 def _pipe(run: PipeBody) -> PipeRun:
-    return PipeRun(
-        run.length.ft, run.inside_diameter.inches, run.c, tuple(sorted(run.fittings.items())), run.nominal
-    )
+    return PipeRun(run.length.ft, run.inside_diameter.inches, run.c, tuple(sorted(run.fittings.items())), run.nominal)
 
 
 def _loss(device: LossBody | None) -> StatedLoss:

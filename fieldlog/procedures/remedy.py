@@ -24,6 +24,4 @@ class Remedy(Body, frozen=True, kw_only=True):
     photos: Annotated[tuple[Photo, ...], Meta(title="Photos", max_length=12)] = ()
 
 
-PROCEDURE = Procedure(
-    "remedy", "Remedy", Remedy, frozenset({"technician", "office", "owner"}), frozenset({"site"})
-)
+PROCEDURE = Procedure("remedy", "Remedy", Remedy, frozenset({"technician", "office", "owner"}), frozenset({"site"}))

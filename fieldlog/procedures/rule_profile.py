@@ -50,9 +50,7 @@ def _require_in_row(rule: Rule | None, path: str, value: object, where: str) -> 
             f"{where}: row {rule.id} is changed but not approved; approve it by name and date", field=where
         )
     if with_field(rule, path, value) != rule:
-        raise InputError(
-            f"{where}: row {rule.id} does not hold this value at {path}; resolve it again", field=where
-        )
+        raise InputError(f"{where}: row {rule.id} does not hold this value at {path}; resolve it again", field=where)
 
 
 def _problems(body: RuleProfileBody) -> list[Problem]:

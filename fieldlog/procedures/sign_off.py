@@ -50,15 +50,11 @@ def _problems(body: SignOff) -> list[Problem]:
     for index, signer in enumerate(body.signers):
         where = f"signers[{index}]"
         if (signer.strokes is None) == (signer.typed is None):
-            found.append(
-                Problem(f"{where}.strokes", "give either a drawn signature or a typed name with the reason")
-            )
+            found.append(Problem(f"{where}.strokes", "give either a drawn signature or a typed name with the reason"))
         if signer.typed is not None and signer.typed_reason is None:
             found.append(Problem(f"{where}.typed_reason", "say why the name is typed and not drawn"))
         if signer.strokes is not None and _STROKES.fullmatch(signer.strokes) is None:
-            found.append(
-                Problem(f"{where}.strokes", "a drawn signature is path text of M, L and C with plain numbers")
-            )
+            found.append(Problem(f"{where}.strokes", "a drawn signature is path text of M, L and C with plain numbers"))
     return found
 
 

@@ -45,9 +45,7 @@ def typed_quantity(text: str, quantity: type[_Typed], default_unit: str | None, 
     plain = _plain(text)
     match = _QUANTITY.match(plain)
     if match is None:
-        raise InputError(
-            f"{field}: {text.strip()!r} is not a number; write it as 72.5 or with its unit", field=field
-        )
+        raise InputError(f"{field}: {text.strip()!r} is not a number; write it as 72.5 or with its unit", field=field)
     unit = _unit(match["unit"], quantity, default_unit, field)
     return quantity(value=typed_decimal(match["number"], field), unit=unit)
 

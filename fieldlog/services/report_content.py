@@ -8,12 +8,12 @@ from typing import Any
 
 from fieldlog.assessment.codes import ReasonCode
 from fieldlog.canonical import canonical_text
-from fieldlog.procedures.bodies import rows
 from fieldlog.procedures.catalogue import PROCEDURES
 from fieldlog.procedures.histories import Typed
+from fieldlog.procedures.rows import rows
 from fieldlog.records.history import Gauge, SupplyHistory, System
 from fieldlog.records.rules import RuleProfile
-from fieldlog.records.statement import SystemStatement
+from fieldlog.records.statement import Statement, SystemStatement
 from fieldlog.reports.content import (
     Block,
     Facts,
@@ -49,7 +49,16 @@ from fieldlog.wording.steps import cannot_show_sentence, next_sentence, what_to_
 _SAID_ELSEWHERE = {ReasonCode.TEN_PERCENT, ReasonCode.MARGIN_MEASURED, ReasonCode.HOLDING}
 
 # Fields that stand elsewhere on the page, or are of use to programs only.
-_NOT_PRINTED = {"Performed on", "Done", "Standing", "Cautions ticked", "Tested at", "Did not recover"}
+_NOT_PRINTED = {
+    "Performed on",
+    "Done",
+    "Standing",
+    "Cautions ticked",
+    "Item",
+    "Start",
+    "End",
+    "Edition and clause it answers",
+}
 
 
 def visit_report(scope: Scope, made_at: datetime, revision: Revision | None, missing_photos: int = 0) -> VisitReport:
@@ -143,7 +152,7 @@ def _stated(scope: Scope, said: SystemStatement) -> StatedSystem:
 def reason_sentences(scope: Scope, said: SystemStatement) -> Iterator[str]:
     """Return the sentences under a statement: the criterion, the reasons with their entries, what comes next."""
     names = {uid: scope.name_of(uid) for uid in (said.system,)}
-    if said.ten_percent:
+    if said.ten_percent and said.statement is not Statement.CHANGED:
         yield ten_percent_sentence(said.ten_percent)
     for reason in (*said.reasons, *said.findings):
         if reason.code not in _SAID_ELSEWHERE:
@@ -243,7 +252,7 @@ def _test(scope: Scope, one: Typed) -> TestRecord:
     procedure = PROCEDURES[one.entry.kind]
     printed = rows(one.body, scope.name_of)
     readings = [row for row in printed if row.is_reading]
-    facts = [row for row in printed if not row.is_reading and row.label not in _NOT_PRINTED]
+    facts = [row for row in printed if not row.is_reading and row.label not in _NOT_PRINTED and row.value != "no"]
     gauges = {gauge.uid: gauge for history in scope.histories for gauge in _gauges(history)}
     return TestRecord(
         title=procedure.label,
