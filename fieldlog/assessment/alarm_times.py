@@ -4,10 +4,10 @@ from __future__ import annotations
 
 from collections.abc import Iterator, Sequence
 from datetime import date
+from fractions import Fraction
 from statistics import median
 from typing import Literal
 
-from fieldlog.assessment import constants
 from fieldlog.assessment.codes import ReasonCode
 from fieldlog.assessment.expected import student_interval
 from fieldlog.records.history import AlarmTest, System
@@ -74,18 +74,15 @@ def _lengthening(which: _Which, seconds: float, tests: Sequence[AlarmTest]) -> I
 
 
 def _delivery(tests: Sequence[AlarmTest], profile: RuleProfile | None) -> Iterator[Reason]:
-    trips = [
-        test for test in tests if test.is_dry and test.delivery_s is not None and test.is_full_flow is not False
-    ]
+    trips = [test for test in tests if test.is_dry and test.delivery_s is not None and test.is_full_flow is not False]
     if not trips or trips[-1].delivery_s is None:
         return
     newest, seconds = trips[-1], trips[-1].delivery_s
     accepted = [test for test in trips[:-1] if test.standing == "acceptance" and test.delivery_s]
-    stated = None if profile is None else profile.delivery_increase_percent()
-    percent = constants.DELIVERY_INCREASE_PERCENT if stated is None else stated
-    if accepted and accepted[-1].delivery_s is not None:
+    percent = None if profile is None else profile.delivery_increase_percent()
+    if accepted and accepted[-1].delivery_s is not None and percent is not None:
         then = accepted[-1].delivery_s
-        if 100 * seconds >= float(100 + percent) * then:
+        if 100 * Fraction(str(seconds)) >= (100 + percent) * Fraction(str(then)):
             numbers: dict[str, Number] = {"seconds": seconds, "acceptance_s": then, "increase": seconds / then - 1}
             yield Reason(ReasonCode.DELIVERY_LONGER, numbers, (newest.entry, accepted[-1].entry), _SECTION)
     limit_s = None if profile is None else profile.delivery_limit_s()

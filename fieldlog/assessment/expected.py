@@ -4,8 +4,8 @@ from __future__ import annotations
 
 import math
 from collections.abc import Sequence
-from dataclasses import dataclass
-from statistics import fmean, stdev
+from dataclasses import dataclass, replace
+from statistics import fmean
 
 from scipy.special import stdtrit
 
@@ -34,7 +34,11 @@ class Interval:
 
     def holds(self, value: float) -> bool:
         """Return whether the value lies inside."""
-        return self.low <= value <= self.high
+        return self.low - constants.EVEN_PSI <= value <= self.high + constants.EVEN_PSI
+
+    def widened(self, half: float) -> Interval:
+        """Return the same with another half width added in quadrature."""
+        return Interval(self.mean, math.hypot(self.half, half))
 
 
 def student_interval(values: Sequence[float], least_sigma: float) -> Interval | None:
@@ -67,7 +71,9 @@ def student_interval(values: Sequence[float], least_sigma: float) -> Interval | 
     if n < constants.BAND_TESTS:
         return None
     quantile = float(stdtrit(n - 1, constants.BAND_QUANTILE))
-    return Interval(fmean(values), quantile * max(stdev(values), least_sigma) * math.sqrt(1 + 1 / n))
+    mean = sum(values) / n
+    spread = math.sqrt(sum((value - mean) ** 2 for value in values) / (n - 1))
+    return Interval(mean, quantile * max(spread, least_sigma) * math.sqrt(1 + 1 / n))
 
 
 @dataclass(frozen=True, slots=True)
@@ -86,8 +92,18 @@ class Expected:
         slope = 1 + INDEX_EXPONENT * (read - residual_psi) / max(residual_psi, 1.0)
         by_index = max(residual_psi, 0.0) ** INDEX_EXPONENT * self.index.half / slope
         static_half = self.static.half if static_psi is None else _two_sided() * self.static_sigma_psi
-        return Interval(
-            residual_psi, math.hypot(by_index, static_half / slope, _two_sided() * self.residual_sigma_psi)
+        return Interval(residual_psi, math.hypot(by_index, static_half / slope, _two_sided() * self.residual_sigma_psi))
+
+    def with_new_gauge(self, gauge_sigma_psi: float) -> Expected:
+        """Return the bands as widened by a gauge that may read differently by so much (1 sigma)."""
+        if gauge_sigma_psi == 0:
+            return self
+        residual_psi = max(residual_at(self.static.mean, max(self.index.mean, 0.0)), 1.0)
+        by_index = INDEX_EXPONENT * gauge_sigma_psi / residual_psi * self.index.mean
+        return replace(
+            self,
+            static=self.static.widened(_two_sided() * gauge_sigma_psi),
+            index=self.index.widened(_two_sided() * by_index),
         )
 
     def band(self) -> ExpectedBand:
@@ -122,7 +138,7 @@ def expected(earlier: Sequence[Index]) -> Expected | None:
     if len(earlier) < constants.BAND_TESTS:
         return None
     static_sigma = fmean(one.static.sigma_psi for one in earlier)
-    static = student_interval([one.static.psi for one in earlier], static_sigma)
+    static = student_interval([one.static_at_reference_psi for one in earlier], static_sigma)
     index = student_interval([one.index for one in earlier], fmean(one.sigma for one in earlier))
     if static is None or index is None:
         return None

@@ -104,7 +104,7 @@ def _of_newest(gauge: Gauge, own: Sequence[GaugeReading], instruments: Instrumen
 
 def _of_comparison(gauge: Gauge, profile: RuleProfile | None, as_of: date) -> Iterator[Reason]:
     percent = None if profile is None else profile.gauge_accuracy_percent_full_scale()
-    done = [one for one in gauge.comparisons if one.performed_on <= as_of and one.outcome == "kept"]
+    done = [one for one in gauge.comparisons if one.performed_on <= as_of and one.outcome in {"kept", None}]
     if percent is None or not done or gauge.full_scale_psi is None:
         return
     worst_psi = max((shown - reference for reference, shown in done[-1].points_psi), key=abs, default=0.0)

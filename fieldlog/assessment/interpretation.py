@@ -5,13 +5,14 @@ from __future__ import annotations
 import math
 import tomllib
 from collections.abc import Mapping, Sequence
+from collections.abc import Set as AbstractSet
 from dataclasses import dataclass
 from functools import cache
 from importlib.resources import files
 from typing import Any
 
 from fieldlog.assessment import constants
-from fieldlog.assessment.codes import CheckCode
+from fieldlog.assessment.codes import CheckCode, ReasonCode
 from fieldlog.assessment.drain_index import Index
 
 # A residual up by this share of the earlier drop is "much higher": the drain flowed less.
@@ -24,10 +25,10 @@ _LEAST_DIFFERENCE_PSI = 3.0  # less is day to day, common practice
 class Difference:
     """How the newest test differs from an earlier one, in words of the table."""
 
-    static: str
-    residual: str
-    by: str
-    is_slow: bool
+    static: str  # same, lower, higher
+    residual: str  # same, lower, higher, much higher, near zero
+    by: str = "same"  # same: both fell alike; more: the residual fell by more
+    returned: str = "quick"  # quick, slow, never
 
 
 def places_to_look(newest: Index, earlier: Index) -> tuple[str, ...]:
@@ -50,6 +51,30 @@ def places_to_look(newest: Index, earlier: Index) -> tuple[str, ...]:
     interpretation.toml: common practice; a qualified person decides.
     """
     return checks_for(difference(newest, earlier))
+
+
+def places_by_signs(signs: AbstractSet[str], *, is_bled_off: bool) -> tuple[str, ...]:
+    """Return codes of likely places to look that one test tells by itself.
+
+    Parameters
+    ----------
+    signs : set of str
+        Codes of the signs of an impairment in it [-].
+    is_bled_off : bool
+        Static after stood under static before [-].
+
+    Returns
+    -------
+    tuple of str
+        CheckCodes [-].
+
+    References
+    ----------
+    interpretation.toml.
+    """
+    if signs & {ReasonCode.RESIDUAL_NEAR_ZERO, ReasonCode.NOT_RECOVERED}:
+        return checks_for(Difference("any", "near zero", returned="never"))
+    return checks_for(Difference("after below before", "any")) if is_bled_off else ()
 
 
 def difference(newest: Index, earlier: Index) -> Difference:
@@ -76,13 +101,11 @@ def difference(newest: Index, earlier: Index) -> Difference:
     static_psi = newest.static.psi - earlier.static.psi
     residual_psi = newest.residual_psi - earlier.residual_psi
     residual = _word(residual_psi, residual_limit)
-    if residual == "higher" and residual_psi > max(
-        _MUCH_HIGHER_SHARE * earlier.drop_psi, static_psi + residual_limit
-    ):
+    if residual == "higher" and residual_psi > max(_MUCH_HIGHER_SHARE * earlier.drop_psi, static_psi + residual_limit):
         residual = "much higher"
-    is_slow = newest.test.return_s is not None and newest.test.return_s >= constants.RECOVERY_S
+    is_slow = newest.test.return_s is not None and newest.test.return_s >= constants.SLOW_RETURN_S
     by = "more" if static_psi - residual_psi > residual_limit else "same"
-    return Difference(_word(static_psi, static_limit), residual, by, is_slow)
+    return Difference(_word(static_psi, static_limit), residual, by, "slow" if is_slow else "quick")
 
 
 def checks_for(difference: Difference) -> tuple[str, ...]:
@@ -111,9 +134,7 @@ def checks_for(difference: Difference) -> tuple[str, ...]:
 def _fits(row: Mapping[str, Any], found: Difference) -> bool:
     if row["static"] not in {"any", found.static} or row["residual"] != found.residual:
         return False
-    if row.get("return") == "slow" and not found.is_slow:
-        return False
-    return bool(row.get("by", found.by) == found.by)
+    return bool(row.get("return", found.returned) == found.returned and row.get("by", found.by) == found.by)
 
 
 def _word(difference_psi: float, limit_psi: float) -> str:

@@ -3,23 +3,16 @@
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass, field, replace
+from dataclasses import dataclass
 from datetime import date
 
 from fieldlog.assessment import constants
 from fieldlog.assessment.codes import ReasonCode
+from fieldlog.assessment.curve_at_base import BaseCurve, by_design, by_flow_test, by_stated_points
 from fieldlog.assessment.windows import add_months
 from fieldlog.hydraulics.formulas import elevation_pressure
-from fieldlog.hydraulics.pipe import Pipe
-from fieldlog.hydraulics.supply import LossCurve, PointCurve, SupplyCurve, drop_fraction
-from fieldlog.records.history import (
-    Design,
-    FlowTest,
-    ForwardFlowTest,
-    PipeRun,
-    SupplyHistory,
-    System,
-)
+from fieldlog.hydraulics.supply import PointCurve, SupplyCurve, drop_fraction
+from fieldlog.records.history import Design, FlowTest, ForwardFlowTest, SupplyHistory, System
 from fieldlog.records.rules import RuleProfile
 from fieldlog.records.statement import Margin, Number, Reason
 
@@ -34,18 +27,10 @@ class Measured:
     margin: Margin | None = None
     curve: SupplyCurve | PointCurve | None = None
     flow_test: FlowTest | None = None
+    below: tuple[Reason, ...] = ()  # short of the demand although no margin is given
     unproven: tuple[Reason, ...] = ()
     not_comparable: tuple[Reason, ...] = ()
     notes: tuple[Reason, ...] = ()
-
-
-@dataclass(slots=True)
-class _Found:
-    """What is gathered on the way to a margin."""
-
-    notes: list[Reason] = field(default_factory=list)
-    unproven: list[Reason] = field(default_factory=list)
-    elevation_is_missing: bool = False
 
 
 @dataclass(frozen=True, slots=True)
@@ -58,13 +43,18 @@ class Demand:
     without_inside_gpm: float  # where it is unknown whether the inside hose is in the figure
 
 
-def measured_supply(
-    history: SupplyHistory,
-    system: System,
-    profile: RuleProfile | None,
-    as_of: date,
-    tank_level_ft: float | None = None,
-) -> Measured:
+@dataclass(frozen=True, slots=True)
+class _Asked:
+    """Whose margin is asked for, when, and by which rules."""
+
+    history: SupplyHistory
+    system: System
+    demand: Demand
+    profile: RuleProfile | None
+    as_of: date
+
+
+def measured_supply(history: SupplyHistory, system: System, profile: RuleProfile | None, as_of: date) -> Measured:
     """Return the margin at the recorded demand by the newest flow test, or why there is none.
 
     Parameters
@@ -77,8 +67,6 @@ def measured_supply(
         The rules: age of a flow test, margin [-].
     as_of : date
         The day judged [-].
-    tank_level_ft : float, optional
-        Level of a gravity tank at the newest drain test [ft].
 
     Returns
     -------
@@ -89,22 +77,18 @@ def measured_supply(
     ----------
     DEVELOPERS.md, Method §2 and §8; NFPA 13 and NFPA 291 for the curve.
     """
-    barred = _barred(history, as_of)
-    if barred:
-        return Measured(not_comparable=barred)
     demand = demand_of(system)
+    barred = _barred(history, as_of)
+    if barred is not None:
+        return _without_margin(barred, None if demand is None else _forward_flow(system, demand, as_of), demand)
     if demand is None:
         return Measured(unproven=(_reason(ReasonCode.NO_DEMAND),))
+    asked = _Asked(history, system, demand, profile, as_of)
     forward = _forward_flow(system, demand, as_of)
     flow_test = newest_flow_test(history, as_of)
     if forward is not None and (flow_test is None or forward.performed_on >= flow_test.performed_on):
-        return _by_forward_flow(forward, demand, profile, as_of)
-    if flow_test is None:
-        return _by_design(system, demand, profile)
-    measured = _by_flow_test(history, system, demand, flow_test, profile, tank_level_ft)
-    return replace(
-        measured, unproven=measured.unproven + _age(flow_test.performed_on, flow_test.entry, profile, as_of)
-    )
+        return _by_forward_flow(asked, forward)
+    return _without_test(asked) if flow_test is None else _by_flow_test(asked, flow_test)
 
 
 def newest_flow_test(history: SupplyHistory, as_of: date) -> FlowTest | None:
@@ -130,14 +114,13 @@ def newest_flow_test(history: SupplyHistory, as_of: date) -> FlowTest | None:
     tests = [
         test
         for test in history.flow_tests
-        if test.performed_on <= as_of
-        and (not is_pump or (test.pump_state == "running" and test.at == "test_header"))
+        if test.performed_on <= as_of and (not is_pump or (test.pump_state == "running" and test.at == "test_header"))
     ]
-    return tests[-1] if tests else None
+    return max(tests, key=lambda test: (test.performed_on, test.entry), default=None)
 
 
 def demand_of(system: System) -> Demand | None:
-    """Return the recorded demand at the base of riser; None where none is recorded.
+    """Return the recorded demand at the base of riser; None where none that can be is recorded.
 
     Parameters
     ----------
@@ -157,9 +140,9 @@ def demand_of(system: System) -> Demand | None:
     if design is None or design.demand_flow_gpm is None or design.demand_pressure_psi is None:
         return None
     recorded_gpm = design.demand_flow_gpm
-    with_inside_gpm = (
-        recorded_gpm if design.includes_inside_hose is True else recorded_gpm + design.hose_inside_gpm
-    )
+    if not (recorded_gpm > 0 and design.hose_outside_gpm >= 0 and design.hose_inside_gpm >= 0):
+        return None
+    with_inside_gpm = recorded_gpm if design.includes_inside_hose is True else recorded_gpm + design.hose_inside_gpm
     return Demand(with_inside_gpm, design.hose_outside_gpm, _required_at_base(design, system), recorded_gpm)
 
 
@@ -170,208 +153,153 @@ def _required_at_base(design: Design, system: System) -> float:
     return pressure_psi + float(elevation_pressure(design.elevation_ft - system.base_elevation_ft))
 
 
-def _barred(history: SupplyHistory, as_of: date) -> tuple[Reason, ...]:
+def _barred(history: SupplyHistory, as_of: date) -> Reason | None:
+    """Return why no margin is ever given on this supply as it stands."""
     supply = history.supply
     if supply.pressure_reducing_valve != "none":
-        return (_reason(ReasonCode.BEHIND_REDUCING_VALVE, place=supply.pressure_reducing_valve),)
-    if supply.kind in _WITHOUT_MARGIN:
-        return (_reason(ReasonCode.KIND_WITHOUT_OWN_TEST, kind=supply.kind),)
-    if supply.kind == "fire_pump" and newest_flow_test(history, as_of) is None:
-        return (_reason(ReasonCode.KIND_WITHOUT_OWN_TEST, kind=supply.kind),)
-    return ()
+        return _reason(ReasonCode.BEHIND_REDUCING_VALVE, (supply.entry,), place=supply.pressure_reducing_valve)
+    is_pump_untested = (
+        supply.kind == "fire_pump"
+        and newest_flow_test(history, as_of) is None
+        and by_stated_points(supply).curve is None
+    )
+    if supply.kind in _WITHOUT_MARGIN or is_pump_untested:
+        return _reason(ReasonCode.KIND_WITHOUT_OWN_TEST, (supply.entry,), kind=supply.kind)
+    return None
+
+
+def _without_margin(barred: Reason, forward: ForwardFlowTest | None, demand: Demand | None) -> Measured:
+    """Return what a supply without a margin shows: a forward-flow test at demand is its own test."""
+    if forward is None or forward.riser_psi is None or demand is None:
+        return Measured(not_comparable=(barred,))
+    if forward.riser_psi < demand.required_psi:
+        numbers: dict[str, Number] = {
+            "riser_psi": forward.riser_psi,
+            "required_psi": demand.required_psi,
+            "flow_gpm": forward.flow_gpm,
+            "performed_on": forward.performed_on.isoformat(),
+        }
+        short = Reason(ReasonCode.FORWARD_FLOW_SHORT, numbers, (forward.entry,), "11")
+        return Measured(below=(short,), unproven=(barred,))
+    kind = str(barred.numbers.get("kind", "reducing valve"))
+    own = _reason(ReasonCode.NO_MARGIN_OF_KIND, (forward.entry,), kind=kind)
+    return Measured(unproven=(own,))
 
 
 def _forward_flow(system: System, demand: Demand, as_of: date) -> ForwardFlowTest | None:
+    """Return the newest forward-flow test at or above the demand, with the pressure at the riser."""
     found = [
         test
         for test in system.forward_flow_tests
         if test.performed_on <= as_of and test.riser_psi is not None and test.flow_gpm >= demand.flow_gpm
     ]
-    return found[-1] if found else None
+    return max(found, key=lambda test: (test.performed_on, test.entry), default=None)
 
 
-def _by_forward_flow(test: ForwardFlowTest, demand: Demand, profile: RuleProfile | None, as_of: date) -> Measured:
-    found = _Found(unproven=list(_age(test.performed_on, test.entry, profile, as_of)))
-    available_psi = test.riser_psi if test.riser_psi is not None else math.nan
-    margin = _margin(available_psi, demand, profile, "forward-flow test", (test.entry,), found)
-    return _measured(margin, None, None, found)
+def _by_forward_flow(asked: _Asked, test: ForwardFlowTest) -> Measured:
+    old, notes = _age(asked, test.performed_on, test.entry)
+    available_psi = math.nan if test.riser_psi is None else test.riser_psi
+    margin = _margin(asked, available_psi, "forward-flow test", (test.entry,), constants.MARGIN_BAND_PSI)
+    return Measured(margin, unproven=old, notes=notes)
 
 
-def _by_design(system: System, demand: Demand, profile: RuleProfile | None) -> Measured:
-    found = _Found(unproven=[_reason(ReasonCode.NO_FLOW_TEST)])
-    design = system.design
-    curve = None if design is None else design_curve(design, system)
-    if design is None or curve is None:
-        return Measured(unproven=tuple(found.unproven))
-    found.notes.append(_reason(ReasonCode.DESIGN_CURVE_ONLY, entries=(design.entry,)))
-    available_psi = float(curve.available(demand.flow_gpm, demand.outside_gpm))
+def _without_test(asked: _Asked) -> Measured:
+    """Return the margin by stated points of a pump or by the design's curve: never proven."""
+    missing = (_reason(ReasonCode.NO_FLOW_TEST),)
+    supply, design = asked.history.supply, asked.system.design
+    if supply.kind == "fire_pump":
+        base, basis, entry, half_psi = by_stated_points(supply), "stated points", supply.entry, 0.0
+        notes: tuple[Reason, ...] = ()
+    elif design is not None:
+        base, basis, entry = by_design(asked.system, design), "design supply curve", design.entry
+        half_psi = constants.DESIGN_BAND_PSI
+        notes = (_reason(ReasonCode.DESIGN_CURVE_ONLY, (design.entry,)),) if base.curve is not None else ()
+    else:
+        return Measured(unproven=missing)
+    unproven = (*missing, *base.unproven)
+    if base.curve is None:
+        return Measured(unproven=unproven, notes=base.notes)
+    available_psi = _available_psi(base.curve, asked.demand)
     if math.isnan(available_psi):
-        return Measured(unproven=tuple(found.unproven), notes=tuple(found.notes))
-    margin = _margin(available_psi, demand, profile, "design supply curve", (design.entry,), found)
-    return _measured(margin, curve, None, found)
+        return Measured(curve=base.curve, unproven=(*unproven, _beyond(asked.demand)), notes=(*notes, *base.notes))
+    half_psi = _half_psi(base, max(half_psi, constants.MARGIN_BAND_PSI))
+    margin = _margin(asked, available_psi, basis, (entry,), half_psi)
+    inside = _inside_hose_notes(asked, base.curve)
+    return Measured(margin, base.curve, unproven=unproven, notes=(*notes, *base.notes, *inside))
 
 
-def design_curve(design: Design, system: System) -> SupplyCurve | None:
-    """Return the supply curve the design record states, at the base of riser; None where it states none.
-
-    Parameters
-    ----------
-    design : Design
-        The design record [-].
-    system : System
-        Its system: feed and elevation [-].
-
-    Returns
-    -------
-    SupplyCurve or None
-        Curve [psi, gpm].
-
-    References
-    ----------
-    NFPA 13, hydraulic design information sign.
-    """
-    static, residual, flow = design.supply_static_psi, design.supply_residual_psi, design.supply_flow_gpm
-    if static is None or residual is None or flow is None or not (residual < static and flow > 0):
-        return None
-    curve = through_feed(SupplyCurve.from_flow_test(static, residual, flow), system)
-    if design.supply_elevation_ft is not None and system.base_elevation_ft is not None:
-        curve = curve.at_elevation(system.base_elevation_ft - design.supply_elevation_ft)
-    return curve
-
-
-def through_feed(curve: SupplyCurve, system: System) -> SupplyCurve:
-    """Return the curve behind the system's own feed, from the hose point to the base of riser.
-
-    Parameters
-    ----------
-    curve : SupplyCurve
-        Curve at the hose point [psi, gpm].
-    system : System
-        The system whose feed it passes [-].
-
-    Returns
-    -------
-    SupplyCurve
-        Curve at the base of riser [psi, gpm].
-
-    References
-    ----------
-    DEVELOPERS.md, Method §2: two segments.
-    """
-    for part in system.feed:
-        if isinstance(part, PipeRun):
-            curve = curve.through(
-                Pipe(part.length_ft, part.inside_diameter_in, part.c, part.fittings, part.nominal_in)
-            )
-        elif part.points:
-            curve = curve.with_loss(LossCurve(part.points))
-    return curve
-
-
-def _by_flow_test(
-    history: SupplyHistory,
-    system: System,
-    demand: Demand,
-    test: FlowTest,
-    profile: RuleProfile | None,
-    tank_level_ft: float | None,
-) -> Measured:
-    found = _Found()
-    curve = _curve_at_base(history, system, test, found)
-    if curve is None:
-        return _measured(None, None, test, found)
-    available_psi = float(curve.available(demand.flow_gpm, demand.outside_gpm))
-    available_psi += _tank_correction(history, tank_level_ft, found)
+def _by_flow_test(asked: _Asked, test: FlowTest) -> Measured:
+    old, notes = _age(asked, test.performed_on, test.entry)
+    base = by_flow_test(asked.history.supply, asked.system, test)
+    notes, unproven = (*notes, *base.notes), (*old, *base.unproven)
+    if base.curve is None:
+        return Measured(flow_test=test, below=_below_before_feed(asked, base, test), unproven=unproven, notes=notes)
+    available_psi = _available_psi(base.curve, asked.demand)
     if math.isnan(available_psi):
-        found.unproven.append(
-            _reason(ReasonCode.DEMAND_BEYOND_POINTS, demand_gpm=demand.flow_gpm + demand.outside_gpm)
-        )
-        return _measured(None, curve, test, found)
-    _note_extrapolation(found, test, demand)
-    if any(reason.code == ReasonCode.FLOW_TEST_DROP_SMALL for reason in found.unproven):
-        return _measured(None, curve, test, found)
-    _note_inside_hose(found, curve, demand, system)
-    basis = "pump test" if history.supply.kind == "fire_pump" else "flow test"
-    margin = _margin(available_psi, demand, profile, basis, (test.entry,), found)
-    return _measured(margin, curve, test, found)
+        return Measured(None, base.curve, test, unproven=(*unproven, _beyond(asked.demand)), notes=notes)
+    small_drop, extrapolated = _extrapolation(asked, test)
+    notes = (*notes, *extrapolated, *_inside_hose_notes(asked, base.curve))
+    if small_drop:
+        return Measured(None, base.curve, test, unproven=(*unproven, *small_drop), notes=notes)
+    basis = "pump test" if asked.history.supply.kind == "fire_pump" else "flow test"
+    margin = _margin(asked, available_psi, basis, (test.entry,), _half_psi(base, constants.MARGIN_BAND_PSI))
+    return Measured(margin, base.curve, test, unproven=unproven, notes=notes)
 
 
-def _curve_at_base(
-    history: SupplyHistory, system: System, test: FlowTest, found: _Found
-) -> SupplyCurve | PointCurve | None:
-    if not all(residual < test.static_psi and flow > 0 for flow, residual in test.points):
-        found.unproven.append(_reason(ReasonCode.NO_FLOW_TEST, entries=(test.entry,)))
-        return None
-    rise_ft = _rise_ft(system, test, found)
-    if history.supply.kind == "fire_pump":
-        return PointCurve(((0.0, test.static_psi), *test.points)).at_elevation(rise_ft)
-    curve = SupplyCurve.from_points(test.static_psi, test.points).at_elevation(rise_ft)
-    if test.at in {"base_of_riser", "test_header"}:
-        return _split_at_hose_point(curve, system, found)
-    if not system.feed:
-        found.unproven.append(_reason(ReasonCode.FEED_NOT_RECORDED, entries=(test.entry,), at=test.at))
-        return None
-    return through_feed(curve, system)
-
-
-def _split_at_hose_point(curve: SupplyCurve, system: System, found: _Found) -> SupplyCurve:
-    """Return a curve measured at the base of riser in its two segments, as far as the feed is on record."""
-    path = through_feed(SupplyCurve(curve.static_psi, 0.0), system)
-    if not path.losses and 0 < path.a_path < curve.a_source:
-        return SupplyCurve(curve.static_psi, curve.a_source - path.a_path, path.a_path)
-    hose_gpm = 0.0 if system.design is None else system.design.hose_outside_gpm
-    if hose_gpm > 0:
-        found.notes.append(_reason(ReasonCode.HOSE_THROUGH_ALL, hose_outside_gpm=hose_gpm))
-    return curve
-
-
-def _rise_ft(system: System, test: FlowTest, found: _Found) -> float:
-    if system.base_elevation_ft is not None and test.elevation_ft is not None:
-        return system.base_elevation_ft - test.elevation_ft
-    if test.at == "base_of_riser":
-        return 0.0
-    found.elevation_is_missing = True
-    of = "base of riser" if system.base_elevation_ft is None else "flow test"
-    numbers: dict[str, Number] = {"of": of, "sigma_psi": constants.UNKNOWN_ELEVATION_PSI}
-    found.notes.append(Reason(ReasonCode.ELEVATION_MISSING, numbers, (test.entry,), "1"))
-    return 0.0
-
-
-def _tank_correction(history: SupplyHistory, level_ft: float | None, found: _Found) -> float:
-    reference_ft = history.supply.tank_level_reference_ft
-    if history.supply.kind != "gravity_tank" or level_ft is None or reference_ft is None:
-        return 0.0
-    correction_psi = float(elevation_pressure(level_ft - reference_ft))
-    found.notes.append(_reason(ReasonCode.TANK_LEVEL_CORRECTED, correction_psi=correction_psi))
-    return correction_psi
-
-
-def _age(performed_on: date, entry: int, profile: RuleProfile | None, as_of: date) -> tuple[Reason, ...]:
-    months = None if profile is None else profile.flow_test_valid_months()
-    if months is None or as_of <= add_months(performed_on, months):
+def _below_before_feed(asked: _Asked, base: BaseCurve, test: FlowTest) -> tuple[Reason, ...]:
+    """Return that even without the losses of a feed that is not on record too little would be left."""
+    if base.before_feed is None:
         return ()
-    when = performed_on.isoformat()
-    return (_reason(ReasonCode.FLOW_TEST_OLD, entries=(entry,), performed_on=when, months=months),)
+    available_psi = _available_psi(base.before_feed, asked.demand)
+    if not available_psi < asked.demand.required_psi:
+        return ()
+    numbers: dict[str, Number] = {
+        "margin_psi": available_psi - asked.demand.required_psi,
+        "available_psi": available_psi,
+        "required_psi": asked.demand.required_psi,
+        "demand_flow_gpm": asked.demand.flow_gpm,
+    }
+    return (Reason(ReasonCode.BELOW_DEMAND, numbers, (test.entry,), "8"),)
 
 
-def _note_extrapolation(found: _Found, test: FlowTest, demand: Demand) -> None:
+def _available_psi(curve: SupplyCurve | PointCurve, demand: Demand) -> float:
+    return float(curve.available(demand.flow_gpm, demand.outside_gpm))
+
+
+def _beyond(demand: Demand) -> Reason:
+    return _reason(ReasonCode.DEMAND_BEYOND_POINTS, demand_gpm=demand.flow_gpm + demand.outside_gpm)
+
+
+def _age(asked: _Asked, performed_on: date, entry: int) -> tuple[tuple[Reason, ...], tuple[Reason, ...]]:
+    """Return that the test is older than the rule allows; or, beside it, that no rule says how old it may be."""
+    if asked.profile is None:
+        return (), ()
+    on, months = performed_on.isoformat(), asked.profile.flow_test_valid_months()
+    if months is None:
+        return (), (_reason(ReasonCode.FLOW_TEST_AGE_NOT_RULED, (entry,), performed_on=on),)
+    if asked.as_of <= add_months(performed_on, months):
+        return (), ()
+    return (_reason(ReasonCode.FLOW_TEST_OLD, (entry,), performed_on=on, months=months),), ()
+
+
+def _extrapolation(asked: _Asked, test: FlowTest) -> tuple[tuple[Reason, ...], tuple[Reason, ...]]:
+    """Return that the drop was too small to go beyond the tested flow; or, beside it, that it was gone beyond."""
     tested_gpm = max(flow for flow, _ in test.points)
-    wanted_gpm = demand.flow_gpm + demand.outside_gpm
+    wanted_gpm = asked.demand.flow_gpm + asked.demand.outside_gpm
     if wanted_gpm <= tested_gpm:
-        return
+        return (), ()
     drop = max(drop_fraction(test.static_psi, residual) for _, residual in test.points)
     if drop < constants.LEAST_DROP_SHARE:
         numbers: dict[str, Number] = {"drop": drop, "tested_gpm": tested_gpm}
-        found.unproven.append(Reason(ReasonCode.FLOW_TEST_DROP_SMALL, numbers, (test.entry,), _SECTION))
-    else:
-        numbers = {"tested_gpm": tested_gpm, "demand_gpm": wanted_gpm}
-        found.notes.append(Reason(ReasonCode.EXTRAPOLATED, numbers, (test.entry,), _SECTION))
+        return (Reason(ReasonCode.FLOW_TEST_DROP_SMALL, numbers, (test.entry,), _SECTION),), ()
+    numbers = {"tested_gpm": tested_gpm, "demand_gpm": wanted_gpm}
+    return (), (Reason(ReasonCode.EXTRAPOLATED, numbers, (test.entry,), _SECTION),)
 
 
-def _note_inside_hose(found: _Found, curve: SupplyCurve | PointCurve, demand: Demand, system: System) -> None:
-    design = system.design
+def _inside_hose_notes(asked: _Asked, curve: SupplyCurve | PointCurve) -> tuple[Reason, ...]:
+    design, demand = asked.system.design, asked.demand
     if design is None or design.includes_inside_hose is not None or demand.flow_gpm == demand.without_inside_gpm:
-        return
+        return ()
     margins = [
         float(curve.available(flow_gpm, demand.outside_gpm)) - demand.required_psi
         for flow_gpm in (demand.without_inside_gpm, demand.flow_gpm)
@@ -381,20 +309,17 @@ def _note_inside_hose(found: _Found, curve: SupplyCurve | PointCurve, demand: De
         "margin_with_psi": margins[1],
         "hose_inside_gpm": design.hose_inside_gpm,
     }
-    found.notes.append(Reason(ReasonCode.INSIDE_HOSE_UNKNOWN, numbers, (design.entry,), "10"))
+    return (Reason(ReasonCode.INSIDE_HOSE_UNKNOWN, numbers, (design.entry,), "10"),)
 
 
-def _margin(
-    available_psi: float,
-    demand: Demand,
-    profile: RuleProfile | None,
-    basis: str,
-    entries: tuple[int, ...],
-    found: _Found,
-) -> Margin:
-    half_psi = constants.MARGIN_BAND_PSI
-    if found.elevation_is_missing:
-        half_psi = math.hypot(half_psi, constants.NORMAL_90 * constants.UNKNOWN_ELEVATION_PSI)
+def _half_psi(base: BaseCurve, half_psi: float) -> float:
+    if not base.elevation_is_missing:
+        return half_psi
+    return math.hypot(half_psi, constants.NORMAL_90 * constants.UNKNOWN_ELEVATION_PSI)
+
+
+def _margin(asked: _Asked, available_psi: float, basis: str, entries: tuple[int, ...], half_psi: float) -> Margin:
+    demand, profile = asked.demand, asked.profile
     median_psi = available_psi - demand.required_psi
     rule_psi = 0.0 if profile is None else profile.margin_psi(demand.required_psi, available_psi)
     return Margin(
@@ -407,12 +332,6 @@ def _margin(
         basis=basis,
         entries=entries,
     )
-
-
-def _measured(
-    margin: Margin | None, curve: SupplyCurve | PointCurve | None, test: FlowTest | None, found: _Found
-) -> Measured:
-    return Measured(margin, curve, test, tuple(found.unproven), (), tuple(found.notes))
 
 
 def _reason(code: ReasonCode, entries: tuple[int, ...] = (), **numbers: Number) -> Reason:

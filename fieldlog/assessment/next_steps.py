@@ -36,6 +36,12 @@ _STEPS: Mapping[str, tuple[NextCode, ...]] = {
     ReasonCode.BLIND_LOSS_ABOVE_MARGIN: (
         NextCode.FINER_GAUGE, NextCode.PITOT_DRAIN, NextCode.FORWARD_FLOW_TEST
     ),
+    ReasonCode.BLIND_LOSS_UNKNOWN: (NextCode.NEXT_TEST,),
+    ReasonCode.DRAIN_SIZE_UNKNOWN: (NextCode.ENTER_DRAIN_SIZE,),
+    ReasonCode.FIGURES_UNUSABLE: (NextCode.MEND_FIGURES,),
+    ReasonCode.FORWARD_FLOW_SHORT: (NextCode.ENGINEER_REVIEWS, NextCode.FLOW_TEST),
+    ReasonCode.PUMP_STARTED: (NextCode.REPEAT_SAME_STATE,),
+    ReasonCode.SYSTEM_SIDE_GAUGE: (NextCode.REPEAT_SAME_STATE,),
     ReasonCode.ELEVATION_MISSING: (NextCode.ENTER_ELEVATIONS,),
     ReasonCode.NO_PROFILE: (NextCode.ENTER_PROFILE,),
 }  # fmt: skip

@@ -3,13 +3,16 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Mapping, Sequence
+from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import dataclass
 from datetime import date
+from operator import itemgetter
 
 from fieldlog.assessment import constants
-from fieldlog.records.history import DrainTest, Gauge, GaugeComparison, Reading, SupplyHistory, System
+from fieldlog.records.history import DrainTest, Gauge, GaugeComparison, GaugeReading, Reading, SupplyHistory
 from fieldlog.units import pressure_in
+
+_Place = tuple[date, int, int]  # day, entry, order within it
 
 
 @dataclass(frozen=True, slots=True)
@@ -89,16 +92,14 @@ def instruments(history: SupplyHistory, as_of: date) -> Instruments:
         Gauges by uid, heaps by reading [psi].
     """
     gauges = {gauge.uid: gauge for gauge in (*history.supply_gauges, *history.organisation_gauges)}
-    runs: dict[str, list[tuple[date, int, Reading]]] = {}
+    runs: dict[str, dict[_Place, list[Reading]]] = {}
+    for name, place, reading in _placed(history, as_of):
+        runs.setdefault(name, {}).setdefault(place, []).append(reading)
     for system in history.systems:
         gauges |= {gauge.uid: gauge for gauge in system.gauges}
-        for on, entry, reading in _readings(system):
-            if on <= as_of and reading.gauge is not None:
-                runs.setdefault(reading.gauge, []).append((on, entry, reading))
     heaps: dict[int, float] = {}
     for run in runs.values():
-        run.sort(key=lambda item: item[:2])
-        heaps |= _heaps([reading for _, _, reading in run])
+        heaps |= _heaps([readings for _, readings in sorted(run.items(), key=itemgetter(0))])
     return Instruments(gauges, heaps)
 
 
@@ -160,6 +161,36 @@ def gauge_bias(gauge: Gauge | None, mean_psi: float, on: date) -> Bias:
     return Bias(0.0, _grade_percent(gauge, mean_psi / full_scale) / 100 * full_scale / 2)
 
 
+def replaced_sigma(newest: Reading, earlier: Sequence[Reading], found: Instruments, on: date) -> float:
+    """Return by how much a gauge that none of the earlier readings was made with may read differently.
+
+    Parameters
+    ----------
+    newest : Reading
+        A reading with the gauge in question [psi].
+    earlier : sequence of Reading
+        Earlier readings of the same quantity, oldest first [psi].
+    found : Instruments
+        The gauges [-].
+    on : date
+        Day of the newest reading [-].
+
+    Returns
+    -------
+    float
+        1 sigma; 0 where the gauge is the same or not named [psi].
+
+    References
+    ----------
+    DEVELOPERS.md, Method §1: a replaced gauge is a new bias.
+    """
+    before = {reading.gauge for reading in earlier}
+    if newest.gauge is None or not before or before & {newest.gauge, None}:
+        return 0.0
+    biases = [gauge_bias(found.gauge(reading), reading.psi, on) for reading in (newest, earlier[-1])]
+    return math.hypot(*(bias.sigma_psi for bias in biases))
+
+
 def _grade_percent(gauge: Gauge | None, place: float) -> float:
     if gauge is None or gauge.grade is None:
         return constants.UNKNOWN_GRADE_PERCENT
@@ -171,9 +202,9 @@ def _newest_comparison(gauge: Gauge | None, on: date) -> GaugeComparison | None:
     if gauge is None:
         return None
     kept = [
-        one for one in gauge.comparisons if one.performed_on <= on and one.outcome == "kept" and one.points_psi
+        one for one in gauge.comparisons if one.performed_on <= on and one.outcome in {"kept", None} and one.points_psi
     ]
-    return kept[-1] if kept else None
+    return max(kept, key=lambda one: (one.performed_on, one.entry), default=None)
 
 
 def _bias_found(gauge: Gauge, compared: GaugeComparison, full_scale_psi: float, on: date) -> Bias:
@@ -192,27 +223,44 @@ def _half_swing_psi(reading: Reading) -> float | None:
     return abs(reading.high_psi - reading.low_psi) / 2
 
 
-def _readings(system: System) -> list[tuple[date, int, Reading]]:
-    found = [(one.performed_on, one.entry, one.reading) for one in system.gauge_readings]
-    for test in system.drain_tests:
-        found += [(test.performed_on, test.entry, reading) for reading in _of_test(test)]
-    return found
+def _placed(history: SupplyHistory, as_of: date) -> Iterator[tuple[str, _Place, Reading]]:
+    """Return every reading by its gauge and its place in time; a test that serves a header stands there once."""
+    for routine in history.gauge_readings:
+        yield from _of_gauge("", routine, as_of)
+    for system in history.systems:
+        for routine in system.gauge_readings:
+            yield from _of_gauge(system.uid, routine, as_of)
+        for test in system.drain_tests:
+            if test.performed_on <= as_of:
+                yield from _of_test(system.uid, test)
 
 
-def _of_test(test: DrainTest) -> list[Reading]:
-    return [reading for reading in (test.static_before, test.residual, test.static_after) if reading is not None]
+def _of_gauge(system: str, routine: GaugeReading, as_of: date) -> Iterator[tuple[str, _Place, Reading]]:
+    if routine.performed_on <= as_of:
+        yield _name(system, routine.reading), (routine.performed_on, routine.entry, 0), routine.reading
 
 
-def _heaps(run: Sequence[Reading]) -> dict[int, float]:
+def _of_test(system: str, test: DrainTest) -> Iterator[tuple[str, _Place, Reading]]:
+    for order, reading in enumerate((test.static_before, test.residual, test.static_after)):
+        if reading is not None:
+            yield _name(system, reading), (test.performed_on, test.entry, order), reading
+
+
+def _name(system: str, reading: Reading) -> str:
+    """Return the gauge; the readings of a system that name none are taken as of one gauge."""
+    return reading.gauge or f"of {system}"
+
+
+def _heaps(run: Sequence[Sequence[Reading]]) -> dict[int, float]:
     """Return the heap of each reading of the newest run of multiples; it applies from the run's first reading."""
-    step = heap_psi(run[-constants.HEAP_RUN :])
+    step = heap_psi([readings[0] for readings in run[-constants.HEAP_RUN :]])
     if step is None:
         return {}
-    found = {}
-    for reading in reversed(run):
-        if not _is_multiple(reading, step, "psi"):
+    found: dict[int, float] = {}
+    for readings in reversed(run):
+        if not _is_multiple(readings[0], step, "psi"):
             break
-        found[id(reading)] = step
+        found |= {id(reading): step for reading in readings}
     return found
 
 

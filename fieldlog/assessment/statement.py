@@ -6,11 +6,11 @@ from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 from datetime import date
 
+from fieldlog.assessment import constants
 from fieldlog.assessment.codes import ReasonCode
 from fieldlog.assessment.comparable import Comparisons
 from fieldlog.assessment.drain_index import Index
 from fieldlog.assessment.expected import Expected
-from fieldlog.assessment.impairment import open_impairments, suspected_impairment
 from fieldlog.assessment.measured_supply import Measured
 from fieldlog.assessment.reading_error import Instruments
 from fieldlog.records.history import Supply, System
@@ -39,6 +39,9 @@ class Evidence:
     trends: tuple[Trend, ...] = ()
     blind: BlindLoss | None = None
     checks: tuple[str, ...] = ()
+    impairment: tuple[Reason, ...] = ()  # signs that stand
+    gauge_sigma_psi: float = 0.0  # of a gauge replaced since
+    drain_k: float | None = None
 
 
 @dataclass(frozen=True, slots=True)
@@ -67,7 +70,7 @@ def decide(evidence: Evidence) -> Verdict:
     DEVELOPERS.md, Method §8.
     """
     groups = (
-        (Statement.SUSPECTED_IMPAIRMENT, list(_impaired(evidence))),
+        (Statement.SUSPECTED_IMPAIRMENT, list(evidence.impairment)),
         (Statement.BELOW_DEMAND, list(_below(evidence))),
         (Statement.CHANGED, list(_changed(evidence))),
         (Statement.NOT_COMPARABLE, list(_not_comparable(evidence))),
@@ -81,16 +84,8 @@ def decide(evidence: Evidence) -> Verdict:
     return Verdict(Statement.HOLDING, (Reason(ReasonCode.HOLDING, {}, (), _SECTION), *beside))
 
 
-def _impaired(evidence: Evidence) -> Iterator[Reason]:
-    if evidence.compared is None:
-        yield from open_impairments(evidence.system)
-        return
-    yield from suspected_impairment(
-        evidence.compared, evidence.system, evidence.instruments, evidence.bands, evidence.profile, evidence.as_of
-    )
-
-
 def _below(evidence: Evidence) -> Iterator[Reason]:
+    yield from evidence.measured.below
     margin = evidence.measured.margin
     if margin is not None and margin.median_psi < 0:
         numbers: dict[str, Number] = {
@@ -131,7 +126,7 @@ def _outside_bands(evidence: Evidence) -> Iterator[Reason]:
     if newest is None or bands is None or compared is None or compared.differs:
         return
     is_confirmed = compared.newest.confirmed != "no"
-    static_psi = newest.static.psi
+    static_psi = newest.static_at_reference_psi
     if not bands.static.holds(static_psi):
         numbers: dict[str, Number] = {
             "static_psi": static_psi,
@@ -140,7 +135,7 @@ def _outside_bands(evidence: Evidence) -> Iterator[Reason]:
             "is_confirmed": is_confirmed,
         }
         yield Reason(ReasonCode.STATIC_OUTSIDE_BAND, numbers, (newest.test.entry,), "6")
-    residual = bands.residual(static_psi)
+    residual = bands.residual(newest.static.psi)
     if not residual.holds(newest.residual_psi):
         numbers = {
             "residual_psi": newest.residual_psi,
@@ -172,7 +167,12 @@ def _unproven(evidence: Evidence) -> Iterator[Reason]:
         if compared.unstated:
             said = ", ".join(compared.unstated)
             yield Reason(ReasonCode.CONDITIONS_NOT_STATED, {"conditions": said}, (compared.newest.entry,), "1")
+        if compared.newest.confirmed == "no":
+            yield from _outside_bands(evidence)
+    if evidence.profile is None:
+        yield Reason(ReasonCode.NO_PROFILE, {}, (), _SECTION)
     yield from _thin_margin(evidence)
+    yield from _blind(evidence)
 
 
 def _thin_margin(evidence: Evidence) -> Iterator[Reason]:
@@ -182,9 +182,19 @@ def _thin_margin(evidence: Evidence) -> Iterator[Reason]:
     if not margin.low_psi >= margin.rule_margin_psi:
         low: dict[str, Number] = {"low_psi": margin.low_psi, "rule_margin_psi": margin.rule_margin_psi}
         yield Reason(ReasonCode.MARGIN_LOW_BOUND, low, margin.entries, _SECTION)
+
+
+def _blind(evidence: Evidence) -> Iterator[Reason]:
+    """Return that a loss which uses up the margin might not have shown, or that nobody can say."""
+    compared, blind, margin = evidence.compared, evidence.blind, evidence.measured.margin
+    if compared is None or compared.differs or margin is None or margin.median_psi < 0:
+        return
+    if blind is None:
+        code = ReasonCode.DRAIN_SIZE_UNKNOWN if evidence.drain_k is None else ReasonCode.BLIND_LOSS_UNKNOWN
+        yield Reason(code, {}, (compared.newest.entry,), _SECTION)
+        return
     left_psi = margin.median_psi - margin.rule_margin_psi
-    blind = evidence.blind
-    if blind is not None and (blind.loss_psi is None or blind.loss_psi > left_psi):
+    if blind.loss_psi is None or not blind.loss_psi <= left_psi:
         numbers: dict[str, Number] = {"loss_psi": blind.loss_psi, "left_psi": left_psi}
         yield Reason(ReasonCode.BLIND_LOSS_ABOVE_MARGIN, numbers, (), _SECTION)
 
@@ -193,14 +203,12 @@ def _beside(evidence: Evidence) -> Iterator[Reason]:
     """Return what is said beside any statement: the margin, the index, how readings were made."""
     yield from _margin_reason(evidence)
     yield from evidence.measured.notes
-    if evidence.profile is None:
-        yield Reason(ReasonCode.NO_PROFILE, {}, (), _SECTION)
+    if evidence.profile is not None and evidence.profile.judged_on == "low_day" and evidence.measured.margin:
+        yield Reason(ReasonCode.LOW_DAY_NOT_JUDGED, {}, (), _SECTION)
     compared, newest = evidence.compared, evidence.newest
     if compared is None:
         return
     yield from compared.notes
-    if compared.newest.confirmed == "no":
-        yield from _outside_bands(evidence)
     if newest is not None:
         yield from newest.static.notes
         yield from newest.notes
@@ -210,6 +218,14 @@ def _beside(evidence: Evidence) -> Iterator[Reason]:
         yield Reason(ReasonCode.DRAIN_INDEX, numbers, (newest.test.entry,), "4")
     yield from _reading_notes(evidence)
     yield from _set_points(evidence)
+    if newest is not None and newest.level_psi != 0:
+        numbers = {"correction_psi": -newest.level_psi}
+        yield Reason(ReasonCode.TANK_LEVEL_CORRECTED, numbers, (newest.test.entry,), "2")
+    if evidence.gauge_sigma_psi > 0:
+        numbers = {"sigma_psi": evidence.gauge_sigma_psi}
+        yield Reason(ReasonCode.GAUGE_REPLACED, numbers, (compared.newest.entry,), "1")
+    if evidence.supply.kind == "fire_pump":
+        yield Reason(ReasonCode.PUMP_INDEX_ONLY, {}, (), "2")
 
 
 def _margin_reason(evidence: Evidence) -> Iterator[Reason]:
@@ -244,7 +260,7 @@ def _reading_notes(evidence: Evidence) -> Iterator[Reason]:
     if heap is not None and (recorded is None or heap > recorded * 1.001):
         yield Reason(ReasonCode.HEAPED_READINGS, {"step_psi": heap}, entries, "1")
     if instruments.division_psi(reading) is None:
-        yield Reason(ReasonCode.DIVISION_UNKNOWN, {"assumed_psi": 2.0}, entries, "1")
+        yield Reason(ReasonCode.DIVISION_UNKNOWN, {"assumed_psi": constants.UNKNOWN_DIVISION_PSI}, entries, "1")
     before = compared.newest.static_before
     if before is not None and reading.exact_psi > before.exact_psi:
         numbers: dict[str, Number] = {"residual_psi": reading.psi, "static_psi": before.psi}
@@ -252,7 +268,7 @@ def _reading_notes(evidence: Evidence) -> Iterator[Reason]:
 
 
 def _set_points(evidence: Evidence) -> Iterator[Reason]:
-    """Return where a pressure behind a reducing valve is off its set point by more than twice its error and 3 psi."""
+    """Return where a pressure behind a reducing valve is off its set point, beyond twice its error and 3 psi."""
     compared, supply = evidence.compared, evidence.supply
     if compared is None or supply.pressure_reducing_valve == "none":
         return

@@ -12,6 +12,7 @@ from fieldlog.records.history import DrainTest, Gauge, Reading
 from fieldlog.records.statement import Reason
 
 _SECTION = "1"
+_HOLDS_PRESSURE = frozenset({"check", "alarm", "backflow"})
 
 
 @dataclass(frozen=True, slots=True)
@@ -43,16 +44,12 @@ def static_of(test: DrainTest, instruments: Instruments) -> Static | None:
     DEVELOPERS.md, Method §1.
     """
     before, after = test.static_before, test.static_after
-    if before is None:
+    if is_not_recovered(test, instruments) or (after is not None and test.steady is False):
         return None
-    before_sigma = instruments.sigma_psi(before)
     if after is None:
-        if test.did_not_recover:
-            return None
-        note = Reason(ReasonCode.STATIC_BEFORE_ONLY, {}, (test.entry,), _SECTION)
-        return Static(before.psi, math.hypot(before_sigma, constants.STATIC_BEFORE_ONLY_PSI), (note,))
-    if test.steady is False or is_not_recovered(test, instruments):
-        return None
+        return None if before is None else _before_only(test, before, instruments)
+    if before is None:
+        return Static(after.psi, instruments.sigma_psi(after))
     return _from_both(test, before, after, instruments)
 
 
@@ -78,11 +75,19 @@ def is_not_recovered(test: DrainTest, instruments: Instruments) -> bool:
     if test.did_not_recover:
         return True
     before, after = test.static_before, test.static_after
-    if before is None or after is None or test.steady is True:
+    if before is None or after is None:
         return False
+    if test.steady is True and _stands_behind_a_valve(instruments.gauge(after)):
+        return False  # what stood above it before was held by the valve
     limit_psi = max(2 * math.sqrt(2) * instruments.sigma_psi(before), constants.RECOVERY_LEAST_PSI)
     waited = test.return_s is not None and test.return_s >= constants.RECOVERY_S
     return waited and before.psi - after.psi > limit_psi
+
+
+def _before_only(test: DrainTest, before: Reading, instruments: Instruments) -> Static:
+    note = Reason(ReasonCode.STATIC_BEFORE_ONLY, {}, (test.entry,), _SECTION)
+    sigma = math.hypot(instruments.sigma_psi(before), constants.STATIC_BEFORE_ONLY_PSI)
+    return Static(before.psi, sigma, (note,))
 
 
 def _from_both(test: DrainTest, before: Reading, after: Reading, instruments: Instruments) -> Static:
@@ -98,4 +103,4 @@ def _from_both(test: DrainTest, before: Reading, after: Reading, instruments: In
 
 
 def _stands_behind_a_valve(gauge: Gauge | None) -> bool:
-    return gauge is not None and bool(gauge.behind)
+    return gauge is not None and bool(_HOLDS_PRESSURE.intersection(gauge.behind))

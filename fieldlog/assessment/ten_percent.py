@@ -14,9 +14,7 @@ from fieldlog.records.rules import RuleProfile
 from fieldlog.records.statement import TenPercent
 
 
-def ten_percent(
-    compared: Comparisons, instruments: Instruments, profile: RuleProfile | None
-) -> tuple[TenPercent, ...]:
+def ten_percent(compared: Comparisons, instruments: Instruments, profile: RuleProfile | None) -> tuple[TenPercent, ...]:
     """Return the fall of the residual against reference, previous and best; the best carries no flag.
 
     Parameters
