@@ -45,18 +45,21 @@ def rebuild() -> None:
 
 
 @click.command()
-@click.argument("target", type=click.Path(path_type=Path, dir_okay=False))
-def backup(target: Path) -> None:
-    """Copy the database to TARGET while the instance goes on, and check the copy."""
-    copy = archive.back_up(open_instance(settings.from_environment()), target)
-    click.echo(f"{copy.path}: {copy.entries} entries, head {copy.head}, {copy.size} bytes")
+@click.argument("folder", type=click.Path(path_type=Path, file_okay=False))
+@click.option("--with-keys", is_flag=True, help="The sealing key too: keep that copy as safe as the key.")
+def backup(folder: Path, with_keys: bool) -> None:  # noqa: FBT001
+    """Copy database, photos and reports into a new FOLDER while the instance goes on, and check the copy."""
+    copy = archive.back_up(open_instance(settings.from_environment()), folder, with_keys=with_keys)
+    click.echo(f"{folder}: {copy.database.entries} entries, head {copy.database.head}, {copy.files} files")
+    if not with_keys:
+        click.echo("the sealing key is not in it; copy the keys folder apart, or use --with-keys")
 
 
 @click.command()
-@click.argument("source", type=click.Path(path_type=Path, exists=True, dir_okay=False))
-def restore(source: Path) -> None:
-    """Check the copy SOURCE and put it in place of a database that is gone. Never replaces one that is there."""
-    result = archive.restore(source, settings.from_environment())
+@click.argument("folder", type=click.Path(path_type=Path, exists=True, file_okay=False))
+def restore(folder: Path) -> None:
+    """Check the backup in FOLDER and put it in place of an instance that is gone. Never replaces one that is there."""
+    result = archive.restore(folder, settings.from_environment())
     click.echo(f"restored {result.checked} entries, head {result.head}")
 
 

@@ -9,9 +9,9 @@ import msgspec
 
 from fieldlog import clock, settings
 from fieldlog.cli.command import SOMETHING_DOES_NOT_HOLD, end_with, progress
+from fieldlog.cli.paragraphs import paragraphs
 from fieldlog.services import reporting, sites
 from fieldlog.services.instance import open_instance
-from fieldlog.wording import paragraphs
 
 
 @click.command()
@@ -28,7 +28,7 @@ def statement(names: tuple[str, ...], as_json: bool, reasons: bool) -> None:  # 
     for row in rows:
         place = f"{row.site.body['name']} · {row.system.body['name']}"
         click.echo(click.style(place, bold=True))
-        for line in paragraphs.of_statement(row.said, row.units, with_reasons=reasons):
+        for line in paragraphs(row, with_reasons=reasons):
             click.echo(f"  {line}")
 
 
