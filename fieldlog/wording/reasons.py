@@ -22,18 +22,14 @@ SENTENCES: Mapping[str, tuple[str, ...]] = {
     ),
     Code.VALVE_FOUND_NOT_OPEN: ("Valve {valve} was found {found}",),
     Code.VALVE_LEFT_NOT_OPEN: ("Valve {valve} was left {left}",),
-    Code.VALVE_SHUT_LONG: (
-        "Valve {valve} is on record as shut for {hours:up}; the rule profile allows {limit_hours}",
-    ),
+    Code.VALVE_SHUT_LONG: ("Valve {valve} is on record as shut for {hours:up}; the rule profile allows {limit_hours}",),
     Code.RESIDUAL_FELL_QUARTER: (
         "Residual fell by {reduction:25} against {against}, from {reference_psi:read} to {residual_psi:read}, "
         "with "
         "the static about as before",
     ),
     Code.IMPAIRMENT_OPEN: ("The impairment on record since {began_at} has not been ended",),
-    Code.STANDS_FROM: (
-        "The signs seen on {performed_on} stand, because no later comparable test has answered them",
-    ),
+    Code.STANDS_FROM: ("The signs seen on {performed_on} stand, because no later comparable test has answered them",),
     # below demand, margin
     Code.BELOW_DEMAND: (
         "At the recorded design demand of {demand_flow_gpm} an estimated {available_psi:down} is available where "
@@ -53,8 +49,7 @@ SENTENCES: Mapping[str, tuple[str, ...]] = {
         "; rule margin {rule_margin_psi:read}",
     ),
     Code.MARGIN_LOW_BOUND: (
-        "The lower end of the estimated margin, {low_psi:down}, is under the rule margin of "
-        "{rule_margin_psi:read-up}",
+        "The lower end of the estimated margin, {low_psi:down}, is under the rule margin of {rule_margin_psi:read-up}",
     ),
     Code.EXTRAPOLATED: (
         "The flow test reached {tested_gpm}; from there to {demand_gpm} the curve is drawn on, an estimate",
@@ -113,12 +108,9 @@ SENTENCES: Mapping[str, tuple[str, ...]] = {
     Code.NO_DRAIN_TEST: ("No main drain test is on record",),
     Code.NO_DEMAND: ("The design demand is not on record",),
     Code.NO_FLOW_TEST: ("No flow test that measures this supply is on record",),
-    Code.FLOW_TEST_OLD: (
-        "The newest flow test is of {performed_on}; the rule profile takes none older than {months}",
-    ),
+    Code.FLOW_TEST_OLD: ("The newest flow test is of {performed_on}; the rule profile takes none older than {months}",),
     Code.FLOW_TEST_DROP_SMALL: (
-        "In the flow test the pressure fell by {drop} at {tested_gpm}, too little to draw the curve on to the "
-        "demand",
+        "In the flow test the pressure fell by {drop} at {tested_gpm}, too little to draw the curve on to the demand",
     ),
     Code.DESIGN_CURVE_ONLY: (
         "The supply curve is that of the design record, an estimate that no flow test on file measured",
@@ -169,8 +161,7 @@ SENTENCES: Mapping[str, tuple[str, ...]] = {
         "the drain index is smaller than can be read",
     ),
     Code.RESIDUAL_ABOVE_STATIC: (
-        "Residual {residual_psi:read} is above static {static_psi:read}: there is no drain index. Did a pump "
-        "start?",
+        "Residual {residual_psi:read} is above static {static_psi:read}: there is no drain index. Did a pump start?",
     ),
     Code.DRAIN_INDEX: ("Drain index {index}, one standard deviation {sigma}", "; {earlier} at the earlier test"),
     Code.PUMP_INDEX_ONLY: (
@@ -178,9 +169,7 @@ SENTENCES: Mapping[str, tuple[str, ...]] = {
     ),
     Code.LOW_DAY_NOT_JUDGED: ("The rule profile asks for a low day; what is judged is the day of the test",),
     Code.FLOW_TEST_AGE_NOT_RULED: ("The flow test is of {performed_on}; the rule profile sets no age for it",),
-    Code.SET_POINT_DIFFERS: (
-        "The {of} behind the reducing valve was {read_psi:read}; it is set to {set_psi:read}",
-    ),
+    Code.SET_POINT_DIFFERS: ("The {of} behind the reducing valve was {read_psi:read}; it is set to {set_psi:read}",),
     Code.HOLDING: ("No change that shows",),
     # findings beside the statement
     Code.GAUGE_OUTSIDE_RANGE: (
@@ -195,8 +184,7 @@ SENTENCES: Mapping[str, tuple[str, ...]] = {
         "to {high_psi:read-down}",
     ),
     Code.GAUGE_OUT_OF_ACCURACY: (
-        "Gauge {gauge} was off by {error_psi:read}, {share:up} of full scale; the rule profile allows "
-        "{limit_share}",
+        "Gauge {gauge} was off by {error_psi:read}, {share:up} of full scale; the rule profile allows {limit_share}",
     ),
     Code.ALARM_LATE: ("The signal at the {which} came after {seconds}; the rule profile allows {limit_s}",),
     Code.ALARM_LENGTHENING: (
@@ -210,8 +198,7 @@ SENTENCES: Mapping[str, tuple[str, ...]] = {
     Code.DELIVERY_LATE: ("Water took {seconds} to the test connection; the rule profile allows {limit_s}",),
 }
 _NO_FINITE_LOSS = (
-    "No loss short of a shut valve would surely have shown in these tests; the estimated margin leaves "
-    "{left_psi:down}",
+    "No loss short of a shut valve would surely have shown in these tests; the estimated margin leaves {left_psi:down}",
 )
 
 

@@ -36,9 +36,7 @@ _AGAINST = {
 }
 
 
-def statement_sentence(
-    statement: SystemStatement, units: SiteUnits, names: Mapping[str, str] | None = None
-) -> str:
+def statement_sentence(statement: SystemStatement, units: SiteUnits, names: Mapping[str, str] | None = None) -> str:
     """Return the first paragraph: state, size, certainty, next step.
 
     `names` gives what people call the gauges, systems and supplies that a reason names by uid.
@@ -202,14 +200,18 @@ def trend_sentence(trend: Trend, units: SiteUnits) -> str:
     slopes = (trend.slope_per_year, trend.slope_low_per_year, trend.slope_high_per_year)
     if trend.quantity == "static_psi":
         noun, unit = "Static", f" {units.pressure}"
-        figures = [Reader(units).bare_estimate(slope, "nearest", finer=1) for slope in slopes]
+        figures = [Reader(units).bare_estimate(slope, "nearest", finer=2) for slope in slopes]
     else:
         noun, unit = "Drain index", ""
         figures = [rounded(slope, 4) for slope in slopes]
     return (
         f"{noun} over {counted(trend.dates, 'date')}: {figures[0]}{unit} a year by Theil-Sen "
-        f"(estimated band {figures[1]} to {figures[2]}); Mann-Kendall p = {rounded(trend.mann_kendall_p, 3)}."
+        f"(estimated band {figures[1]} to {figures[2]}); Mann-Kendall p {_p_value(trend.mann_kendall_p)}."
     )
+
+
+def _p_value(p: float) -> str:
+    return f"= {rounded(p, 3)}" if not p < 0.001 else "< 0.001"
 
 
 def standing_sentence(statement: SystemStatement) -> str:

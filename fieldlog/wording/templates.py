@@ -50,6 +50,10 @@ _WORDS: Mapping[str, str] = {
     "best": "the best on file",
     "fully_open": "whether the drain was fully open",
     "took_full_flow": "whether the outlet took full flow",
+    "running_clear": "whether the drain ran clear",
+    "drain_unchanged": "whether the drain was unchanged",
+    "tank_level": "the level of the tank",
+    "steady": "whether static after was steady",
     "gauge_tap": "where the gauge taps",
     "pump_state": "whether a pump ran",
     "feed altered": "an altered feed",
@@ -161,8 +165,6 @@ def places_of(template: str | tuple[str, ...]) -> set[str]:
 
 def _is_known(part: str, numbers: Mapping[str, Number]) -> bool:
     return all(
-        numbers.get(name) is not None
-        and numbers[name] != ""
-        and not (name in _SILENT_AT_ZERO and numbers[name] == 0)
+        numbers.get(name) is not None and numbers[name] != "" and not (name in _SILENT_AT_ZERO and numbers[name] == 0)
         for name in places_of(part)
     )

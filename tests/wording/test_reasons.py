@@ -10,7 +10,7 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from fieldlog.assessment import codes
+from fieldlog.assessment import codes, comparable
 from fieldlog.assessment.codes import CannotShow, CheckCode, NextCode, ReasonCode
 from fieldlog.procedures.questions import Question
 from fieldlog.records.statement import Number, Reason
@@ -102,9 +102,7 @@ numbers = st.none() | st.floats(allow_nan=True, allow_infinity=True) | st.intege
 def test_no_numbers_make_a_sentence_say_what_is_forbidden(
     code: ReasonCode, data: st.DataObject, units: SiteUnits
 ) -> None:
-    drawn = {
-        name: data.draw(numbers | st.sampled_from(list(TEXTS.values()))) for name in places_of(SENTENCES[code])
-    }
+    drawn = {name: data.draw(numbers | st.sampled_from(list(TEXTS.values()))) for name in places_of(SENTENCES[code])}
     sentence = reason_with_entries(Reason(code, drawn, (3, 12)), units)
     assert not forbidden_in(sentence)
     assert "{" not in sentence
@@ -126,6 +124,15 @@ def test_codes_inside_a_sentence_have_words_and_typed_names_stay_as_typed() -> N
     )
 
 
+def test_every_condition_that_may_be_unstated_has_words() -> None:
+    conditions = re.findall(r'yield "([a-z_]+)"', inspect.getsource(comparable))
+    assert "fully_open" in conditions
+    for condition in conditions:
+        said = reason_sentence(Reason(ReasonCode.CONDITIONS_NOT_STATED, {"conditions": condition}), UNITS[0])
+        assert not said.endswith(f": {condition}."), condition
+        assert "_" not in said
+
+
 def test_a_uid_is_printed_by_its_name() -> None:
     gauge = {"gauge": "u-1", "read_psi": 64.0, "low_psi": None, "high_psi": 60.0}
     said = reason_sentence(Reason(ReasonCode.GAUGE_OUTSIDE_RANGE, gauge), UNITS[0], {"u-1": "Riser gauge"})
@@ -133,9 +140,7 @@ def test_a_uid_is_printed_by_its_name() -> None:
 
 
 def test_a_blind_loss_without_end_has_its_own_sentence() -> None:
-    said = reason_sentence(
-        Reason(ReasonCode.BLIND_LOSS_ABOVE_MARGIN, {"loss_psi": None, "left_psi": 7.9}), UNITS[0]
-    )
+    said = reason_sentence(Reason(ReasonCode.BLIND_LOSS_ABOVE_MARGIN, {"loss_psi": None, "left_psi": 7.9}), UNITS[0])
     assert said == (
         "No loss short of a shut valve would surely have shown in these tests; the estimated margin leaves 7 psi."
     )

@@ -75,9 +75,7 @@ def test_a_change_begins_with_what_changed() -> None:
 
 def test_a_suspected_impairment_speaks_of_nothing_else() -> None:
     reason = Reason(ReasonCode.RESIDUAL_NEAR_ZERO, {"residual_psi": 4.0, "limit_psi": 6.8})
-    said = replace(
-        SAID, statement=Statement.SUSPECTED_IMPAIRMENT, reasons=(reason,), next=(NextCode.CHECK_VALVES_NOW,)
-    )
+    said = replace(SAID, statement=Statement.SUSPECTED_IMPAIRMENT, reasons=(reason,), next=(NextCode.CHECK_VALVES_NOW,))
     assert statement_sentence(said, PSI) == (
         "Suspected impairment. Residual was 4 psi at full flow; 6.8 psi or less counts as nearly none. "
         "Next step: check every valve on the feed before you leave."
@@ -177,10 +175,13 @@ def test_what_a_statement_rests_on_is_said() -> None:
 def test_a_trend_is_two_figures_without_a_word_drawn_from_them() -> None:
     said = trend_sentence(Trend("static_psi", -1.72, -2.41, -0.93, 0.031, 8), PSI)
     assert said == (
-        "Static over 8 dates: −1.7 psi a year by Theil-Sen (estimated band −2.4 to −0.9); Mann-Kendall p = 0.031."
+        "Static over 8 dates: −1.72 psi a year by Theil-Sen (estimated band −2.41 to −0.93); Mann-Kendall p = 0.031."
     )
     assert "declin" not in said
-    assert trend_sentence(Trend("drain_index", 0.0123, 0.001, 0.02, 0.2, 6), PSI).startswith("Drain index over 6")
+    assert trend_sentence(Trend("drain_index", 0.0123, 0.001, 0.02, 0.0002, 6), PSI) == (
+        "Drain index over 6 dates: 0.0123 a year by Theil-Sen (estimated band 0.0010 to 0.0200); "
+        "Mann-Kendall p < 0.001."
+    )
 
 
 def test_the_expected_band_is_an_estimate_of_where_the_next_readings_fall() -> None:
@@ -250,9 +251,7 @@ def test_more_digits_are_shown_where_whole_psi_would_contradict_the_statement() 
 
 
 @given(margins, st.floats(0.004, 3), st.sampled_from(UNITS))
-def test_a_blind_loss_within_the_margin_is_printed_within_it(
-    margin: Margin, room_psi: float, units: SiteUnits
-) -> None:
+def test_a_blind_loss_within_the_margin_is_printed_within_it(margin: Margin, room_psi: float, units: SiteUnits) -> None:
     loss_psi = margin.median_psi - margin.rule_margin_psi - room_psi
     if loss_psi > 0:
         loss, available = shown_loss_and_margin(margin, loss_psi, units)
