@@ -6,9 +6,8 @@ import math
 from collections.abc import Callable, Iterable, Sequence
 from typing import cast
 
-from fieldlog.reports import fonts  # first: it sets reportlab's defaults  # isort: skip
-from reportlab.pdfbase.pdfmetrics import stringWidth
-from reportlab.platypus import Flowable, Paragraph, Spacer, Table, TableStyle
+from fieldlog.reports import fonts  # noqa: F401  first: it sets reportlab's defaults  # isort: skip
+from reportlab.platypus import Flowable, Spacer, Table, TableStyle
 
 from fieldlog.charts.frame import PAPER, Size
 from fieldlog.charts.history import HistoryChart, history_chart
@@ -17,29 +16,32 @@ from fieldlog.charts.pdf import Drawing
 from fieldlog.charts.scene import Ink, Scene
 from fieldlog.charts.supply import SupplyChart, supply_chart
 from fieldlog.reports import content
+from fieldlog.reports.facts import fact_grid
+from fieldlog.reports.prose import Figure
 from fieldlog.reports.styles import (
     BLOCK,
     BODY,
+    BODY_BOLD,
     CELL,
-    CELL_SOFT,
+    CELL_BOLD,
     FINE,
     ITEM,
     PAINTS,
-    READING,
+    READING_SIZE,
     SOFT,
     SOFT_AFTER,
+    SUBTITLE,
+    TEST,
     TYPEFACES,
+    UNIT_SIZE,
     brief,
-    markup,
     paragraph,
     rule,
-    soft,
+    span,
 )
-from fieldlog.reports.tables import FACE, GRID, Cell, Look, pieces, table
+from fieldlog.reports.tables import FACE, Cell, Look, pieces, table
 
 _READINGS_IN_A_ROW = 5
-_LABEL_SHARE = 0.32
-_FACT_GAP = 10.0
 # A value of more characters is a sentence and not printed large.
 _LARGE = 12
 
@@ -54,75 +56,8 @@ def _facts(block: content.Facts, width: float) -> list[Flowable]:
     return [*_title(block.title), *fact_grid(block.rows, width)]
 
 
-def fact_grid(rows: Sequence[content.Row], width: float) -> list[Flowable]:
-    """Return facts two abreast where they are short, over the whole width where they are not."""
-    half = width / 2
-    label, value = half * _LABEL_SHARE, half * (1 - _LABEL_SHARE)
-    cells: list[list[Cell]] = []
-    wide: list[int] = []
-    waiting: list[Cell] = []
-    for row in rows:
-        if not _is_short(row, label, value):
-            if waiting:
-                cells.append([*waiting, "", ""])
-                waiting = []
-            long_rows = _long_fact(row, width - label)
-            wide += range(len(cells), len(cells) + len(long_rows))
-            cells += long_rows
-            continue
-        waiting += [_label(row, label), _value(row)]
-        if len(waiting) == 4:
-            cells.append(waiting)
-            waiting = []
-    if waiting:
-        cells.append([*waiting, "", ""])
-    if not cells:
-        return []
-    look: Look = [
-        *GRID,
-        ("LEFTPADDING", (0, 0), (-1, -1), 0),
-        ("RIGHTPADDING", (0, 0), (-1, -1), _FACT_GAP),
-        ("TEXTCOLOR", (0, 0), (0, -1), PAINTS[Ink.SOFT]),
-        ("TEXTCOLOR", (2, 0), (2, -1), PAINTS[Ink.SOFT]),
-        ("LINEBELOW", (0, 0), (-1, -1), 0.4, PAINTS[Ink.RULE]),
-        *(("SPAN", (1, place), (3, place)) for place in wide),
-    ]
-    return [Table(cells, colWidths=[label, value, label, value], style=TableStyle(look)), Spacer(0, 4)]
-
-
-def _is_short(row: content.Row, label: float, value: float) -> bool:
-    text = " ".join(filter(None, (row.value, row.unit, row.note)))
-    longest = max(text.split(), key=len, default="")
-    return (
-        "\n" not in text
-        and stringWidth(fonts.printable(longest), fonts.REGULAR, CELL.fontSize) <= value - _FACT_GAP
-        and stringWidth(fonts.printable(text), fonts.REGULAR, CELL.fontSize) <= 2 * (value - _FACT_GAP) - 8
-        and stringWidth(fonts.printable(row.label), fonts.REGULAR, CELL.fontSize) <= 2 * (label - _FACT_GAP)
-    )
-
-
-def _label(row: content.Row, width: float) -> Cell:
-    fits = stringWidth(fonts.printable(row.label), fonts.REGULAR, CELL.fontSize) <= width - _FACT_GAP
-    return fonts.printable(row.label) if fits else Paragraph(markup(row.label), CELL_SOFT)
-
-
-def _value(row: content.Row) -> Paragraph:
-    # The point stays at the end of the line when the note goes to the next one.
-    note = soft(f"\u00a0· {row.note}") if row.note else ""
-    return Paragraph(markup(f"{row.value} {row.unit}".strip()) + note, CELL)
-
-
-def _long_fact(row: content.Row, width: float) -> list[list[Cell]]:
-    text = "\n".join(filter(None, (f"{row.value} {row.unit}".strip(), row.note)))
-    rows: list[list[Cell]] = [["", Paragraph(markup(piece), CELL), "", ""] for piece in pieces(text, width)]
-    rows[0][0] = Paragraph(markup(brief(row.label)), CELL_SOFT)
-    return rows
-
-
 def _table(block: content.Table, width: float) -> list[Flowable]:
-    note = [paragraph(block.note, SOFT_AFTER)] if block.note else []
-    for flowable in note:
-        flowable.keepWithNext = 1
+    note = [paragraph(block.note, SUBTITLE)] if block.note else []
     return [*_title(block.title), *note, table(block, width), Spacer(0, 6)]
 
 
@@ -145,13 +80,11 @@ def _scene(chart: content.Chart, size: Size) -> Scene:
 
 
 def _test_record(block: content.TestRecord, width: float) -> list[Flowable]:
-    top: list[Flowable] = [
-        rule(1.0, before=8, after=3),
-        Paragraph(f"<b>{markup(block.title)}</b>", BODY),
-        paragraph(block.subtitle, SOFT_AFTER),
+    top = [
+        rule(1.0, before=8, after=3, keeps_with_next=True),
+        paragraph(block.title, TEST),
+        paragraph(block.subtitle, SUBTITLE),
     ]
-    for flowable in top:
-        flowable.keepWithNext = 1
     remarks = [paragraph(remark, BODY) for remark in (*_long_remarks(block.readings), *block.remarks)]
     entry = [paragraph(block.entry, FINE)] if block.entry else []
     return [*top, *_readings(block.readings, width), *fact_grid(block.facts, width), *remarks, *entry]
@@ -181,7 +114,7 @@ def _readings(readings: Sequence[content.Reading], width: float) -> Iterable[Flo
         group = readings[start : start + abreast]
         rows: list[list[Cell]] = [
             [paragraph(brief(reading.label), SOFT) for reading in group],
-            [Paragraph(_large(reading), READING) for reading in group],
+            [_large(reading) for reading in group],
             [paragraph(brief(reading.gauge), FINE) if reading.gauge else "" for reading in group],
             [paragraph(brief(reading.remark), CELL) if reading.remark else "" for reading in group],
         ]
@@ -190,11 +123,11 @@ def _readings(readings: Sequence[content.Reading], width: float) -> Iterable[Flo
         yield Table(rows, colWidths=widths, style=TableStyle(look), hAlign="LEFT", spaceAfter=6)
 
 
-def _large(reading: content.Reading) -> str:
-    value = brief(reading.value)
-    size = READING.fontSize if len(value) <= _LARGE else CELL.fontSize
-    unit = f' <font name="{fonts.REGULAR}" size="9">{markup(brief(reading.unit, 20))}</font>' if reading.unit else ""
-    return f'<font size="{size}">{markup(value)}</font>{unit}'
+def _large(reading: content.Reading) -> Flowable:
+    value, unit = brief(reading.value), brief(reading.unit, 20)
+    if len(value) > _LARGE:
+        return paragraph(f"{value} {unit}", CELL_BOLD)
+    return Figure(span(value, BODY_BOLD), span(unit, BODY), READING_SIZE, UNIT_SIZE)
 
 
 def _finding(block: content.Finding, width: float) -> list[Flowable]:
@@ -210,9 +143,8 @@ def barred(texts: Sequence[str], width: float, *, is_headed: bool = False, is_li
     rows: list[list[Cell]] = []
     for place, text in enumerate(text for text in texts if text):
         for part, piece in enumerate(pieces(text, width - 24, BODY)):
-            words = f"<b>{markup(piece)}</b>" if is_headed and not place else markup(piece)
-            bullet = "–" if is_list and not part else None
-            rows.append([Paragraph(words, ITEM if is_list else BODY, bulletText=bullet)])
+            style = ITEM if is_list else BODY_BOLD if is_headed and not place else BODY
+            rows.append([paragraph(piece, style, bullet="–" if is_list and not part else "")])
     if not rows:
         return []
     look: Look = [
@@ -239,7 +171,7 @@ def _items(block: content.Items, width: float) -> list[Flowable]:  # noqa: ARG00
 
 def items(texts: Iterable[str]) -> list[Flowable]:
     """Return short sentences as a list."""
-    return [Paragraph(markup(text), ITEM, bulletText="–") for text in texts]
+    return [paragraph(text, ITEM, bullet="–") for text in texts]
 
 
 def _title(text: str) -> list[Flowable]:

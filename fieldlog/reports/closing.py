@@ -5,13 +5,14 @@ from __future__ import annotations
 from collections.abc import Iterator
 
 from fieldlog.reports import fonts  # noqa: F401  first: it sets reportlab's defaults  # isort: skip
-from reportlab.platypus import Flowable, Paragraph, Spacer, Table, TableStyle
+from reportlab.platypus import Flowable, Spacer, Table, TableStyle
 
 from fieldlog.errors import InputError
 from fieldlog.reports import content
-from fieldlog.reports.blocks import barred, fact_grid, items
+from fieldlog.reports.blocks import barred, items
+from fieldlog.reports.facts import fact_grid
 from fieldlog.reports.strokes import Strokes, segments
-from fieldlog.reports.styles import BODY, CELL, FINE, LESSER, SOFT, brief, markup, paragraph, rule
+from fieldlog.reports.styles import BODY, CELL_BOLD, FINE, LESSER, SOFT, brief, paragraph, rule
 from fieldlog.reports.tables import FACE, Look
 
 _STROKES_HEIGHT = 46.0
@@ -56,7 +57,7 @@ def _signed(report: content.VisitReport, width: float) -> Iterator[Flowable]:
 
 def _signature(signature: content.Signature, width: float) -> list[Flowable]:
     lines = [paragraph(brief(line), FINE) for line in signature.lines]
-    name = Paragraph(f"<b>{markup(brief(signature.name))}</b>", CELL)
+    name = paragraph(brief(signature.name), CELL_BOLD)
     role = paragraph(brief(signature.role), SOFT)
     return [*_mark(signature, width), rule(0.8, after=2), name, role, *lines]
 

@@ -7,7 +7,7 @@ from importlib.resources import files
 from io import BytesIO
 
 from reportlab import rl_config
-from reportlab.pdfbase.pdfmetrics import registerFont, registerFontFamily, stringWidth
+from reportlab.pdfbase.pdfmetrics import registerFont, registerFontFamily
 from reportlab.pdfbase.ttfonts import TTFont
 
 REGULAR = "FieldlogSans"
@@ -54,8 +54,3 @@ def _printable_character(character: str) -> str:
         return " "
     # Joiners and direction marks have no ink of their own.
     return "" if unicodedata.category(character) == "Cf" else MISSING
-
-
-def width(text: str, size: float) -> float:
-    """Return how wide a printable text is in the regular typeface."""
-    return float(stringWidth(text, REGULAR, size))

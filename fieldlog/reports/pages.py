@@ -21,8 +21,9 @@ from reportlab.platypus import (
 from fieldlog.charts.pdf import Drawing
 from fieldlog.charts.shapes import statement_shape
 from fieldlog.reports import content
-from fieldlog.reports.blocks import barred, fact_grid, flowables
+from fieldlog.reports.blocks import barred, flowables
 from fieldlog.reports.closing import closing
+from fieldlog.reports.facts import fact_grid
 from fieldlog.reports.pdfa import DocumentFacts, archival_pdf
 from fieldlog.reports.qr import QrCode
 from fieldlog.reports.sheets import SIDE, Sheets

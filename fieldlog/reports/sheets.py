@@ -9,7 +9,7 @@ from fieldlog.reports import fonts  # first: it sets reportlab's defaults  # iso
 from reportlab.pdfgen.canvas import Canvas
 
 from fieldlog.charts.scene import Ink
-from fieldlog.reports import content
+from fieldlog.reports import content, prose
 from fieldlog.reports.styles import PAINTS
 
 # White at both sides of the text, points.
@@ -81,6 +81,6 @@ def _draft(canvas: Canvas, size: tuple[float, float], words: str) -> None:
 
 def _fitted(text: str, width: float, size: float) -> str:
     printed = fonts.printable(text[:_MOST_CHARACTERS].replace("\n", " "))
-    while printed and fonts.width(printed, size) > width:
+    while printed and prose.width(printed, fonts.REGULAR) * size > width:
         printed = printed[:-2].rstrip() + "…" if len(printed) > 2 else ""
     return printed

@@ -1,91 +1,59 @@
-"""The look on paper: paragraph styles, rules and the one way from a text to a paragraph."""
+"""The look on paper: styles of paragraphs, rules, and the one way from a text to a paragraph."""
 
 from __future__ import annotations
 
-import re
-from typing import Any
-from xml.sax.saxutils import escape
-
 from fieldlog.reports import fonts  # first: it sets reportlab's defaults  # isort: skip
 from reportlab.lib.colors import Color, HexColor
-from reportlab.lib.styles import ParagraphStyle
-from reportlab.platypus import HRFlowable, Paragraph
+from reportlab.platypus import HRFlowable
 
 from fieldlog.charts.pdf import Typefaces
 from fieldlog.charts.scene import COLOURS, Ink
+from fieldlog.reports.prose import Prose, Span, Style
 
 TYPEFACES = Typefaces(fonts.REGULAR, fonts.BOLD, fonts.printable)
 PAINTS: dict[Ink, Color] = {ink: HexColor(colour) for ink, colour in COLOURS.items()}
-_SOFT_TAG = f'<font color="{COLOURS[Ink.SOFT]}">'
+_INK, _SOFT = PAINTS[Ink.INK], PAINTS[Ink.SOFT]
 
-
-def _style(
-    name: str,
-    size: float,
-    *,
-    is_bold: bool = False,
-    ink: Ink = Ink.INK,
-    after: float = 0.0,
-    **more: Any,  # noqa: ANN401  reportlab's own
-) -> ParagraphStyle:
-    face = fonts.BOLD if is_bold else fonts.REGULAR
-    return ParagraphStyle(
-        name,
-        fontName=face,
-        bulletFontName=face,
-        fontSize=size,
-        leading=size * 1.36,
-        textColor=PAINTS[ink],
-        spaceAfter=after,
-        splitLongWords=1,
-        **more,
-    )
-
-
-BODY = _style("body", 9.0, after=4.0)
-SOFT = _style("soft", 8.2, ink=Ink.SOFT)
-SOFT_AFTER = _style("soft after", 8.2, ink=Ink.SOFT, after=5.0)
-ORGANISATION = _style("organisation", 10.0, is_bold=True)
+BODY = Style(9.0, _INK, after=4.0)
+BODY_BOLD = Style(9.0, _INK, fonts.BOLD, after=4.0)
+SOFT = Style(8.2, _SOFT)
+SOFT_AFTER = Style(8.2, _SOFT, after=5.0)
+ORGANISATION = Style(10.0, _INK, fonts.BOLD)
 # The right of a report's title is left to the code that leads to its verify page.
 _CODE_ROOM = 84.0
-SITE = _style("site", 21.0, is_bold=True, after=1.0, rightIndent=_CODE_ROOM)
-HEADING = _style("heading", 10.5, after=1.0, rightIndent=_CODE_ROOM)
-SITE_LINE = _style("site line", 8.2, ink=Ink.SOFT, rightIndent=_CODE_ROOM)
-SECTION = _style("section", 14.0, is_bold=True, after=2.0, keepWithNext=1)
-LESSER = _style("lesser section", 11.0, is_bold=True, after=3.0, keepWithNext=1)
-BLOCK = _style("block", 10.0, is_bold=True, after=2.0, spaceBefore=7.0, keepWithNext=1)
-CELL = _style("cell", 8.4)
-CELL_SOFT = _style("soft cell", 8.4, ink=Ink.SOFT)
-CELL_NUMBER = _style("number cell", 8.4, alignment=2)
-CELL_HEAD = _style("head cell", 8.0, is_bold=True)
-CELL_HEAD_NUMBER = _style("number head cell", 8.0, is_bold=True, alignment=2)
-SUBTITLE = _style("subtitle", 8.2, ink=Ink.SOFT, after=5.0, keepWithNext=1)
-READING = _style("reading", 17.0, is_bold=True)
-FINE = _style("fine", 7.2, ink=Ink.SOFT)
-ITEM = _style("item", 9.0, after=2.5, leftIndent=11.0, bulletIndent=1.0)
+SITE = Style(21.0, _INK, fonts.BOLD, after=1.0, right=_CODE_ROOM)
+HEADING = Style(10.5, _INK, after=1.0, right=_CODE_ROOM)
+SITE_LINE = Style(8.2, _SOFT, right=_CODE_ROOM)
+SECTION = Style(14.0, _INK, fonts.BOLD, after=2.0, keeps_with_next=True)
+LESSER = Style(11.0, _INK, fonts.BOLD, after=3.0, keeps_with_next=True)
+BLOCK = Style(10.0, _INK, fonts.BOLD, before=7.0, after=2.0, keeps_with_next=True)
+TEST = Style(9.0, _INK, fonts.BOLD, after=1.0, keeps_with_next=True)
+SUBTITLE = Style(8.2, _SOFT, after=5.0, keeps_with_next=True)
+CELL = Style(8.4, _INK)
+CELL_BOLD = Style(8.4, _INK, fonts.BOLD)
+CELL_SOFT = Style(8.4, _SOFT)
+CELL_NUMBER = Style(8.4, _INK, is_right=True)
+CELL_HEAD = Style(8.0, _INK, fonts.BOLD)
+CELL_HEAD_NUMBER = Style(8.0, _INK, fonts.BOLD, is_right=True)
+READING_SIZE, UNIT_SIZE = 17.0, 9.0
+FINE = Style(7.2, _SOFT)
+ITEM = Style(9.0, _INK, after=2.5, left=11.0)
 
 # A statement hangs beside its shape.
-STATEMENT_INDENT = 64.0
-SYSTEM = _style("system", 8.6, is_bold=True, ink=Ink.SOFT, after=1.0, leftIndent=STATEMENT_INDENT, keepWithNext=1)
-SENTENCE = _style("sentence", 12.4, is_bold=True, after=3.0, leftIndent=STATEMENT_INDENT)
-REASON = _style("reason", 9.0, ink=Ink.SOFT, after=2.5, leftIndent=STATEMENT_INDENT)
+_SHAPE_ROOM = 64.0
+SYSTEM = Style(8.6, _SOFT, fonts.BOLD, after=1.0, left=_SHAPE_ROOM, keeps_with_next=True)
+SENTENCE = Style(12.4, _INK, fonts.BOLD, after=3.0, left=_SHAPE_ROOM)
+REASON = Style(9.0, _SOFT, after=2.5, left=_SHAPE_ROOM)
 
 
-# A number stays on one line with its unit, a day with its month.
-_BELONGS_TO_NUMBER = re.compile(
-    r"(?<=\d) (?=(?:psi|bar|kPa|gpm|L/min|ft|m|in\.|mm|s|min|h|%|°[FC]|years?"
-    r"|Jan|Feb|Mar|Apr|May|Jun|Jul|Aug|Sep|Oct|Nov|Dec)\w*)"
-)
+def span(text: str, style: Style) -> Span:
+    """Return a text as typed in the typeface and ink of a style."""
+    return Span(fonts.printable(text), style.font, style.paint)
 
 
-def markup(text: str) -> str:
-    """Return a text as it is typed, for a paragraph: nothing in it is read as markup."""
-    return escape(_BELONGS_TO_NUMBER.sub("\u00a0", fonts.printable(text))).replace("\n", "<br/>")
-
-
-def soft(text: str) -> str:
-    """Return a text in softer ink, as markup."""
-    return f"{_SOFT_TAG}{markup(text)}</font>"
+def paragraph(text: str, style: Style = BODY, *, bullet: str = "") -> Prose:
+    """Return a paragraph of a text as typed."""
+    return Prose((span(text, style),), style, bullet)
 
 
 def brief(text: str, most: int = 160) -> str:
@@ -94,17 +62,12 @@ def brief(text: str, most: int = 160) -> str:
     return line if len(line) <= most else line[: most - 1] + "…"
 
 
-def paragraph(text: str, style: ParagraphStyle = BODY) -> Paragraph:
-    """Return a paragraph of a text as typed."""
-    return Paragraph(markup(text), style)
-
-
 def rule(thickness: float, *, before: float = 0.0, after: float = 0.0, keeps_with_next: bool = False) -> HRFlowable:
     """Return a line across the page; its thickness tells rank."""
     line = HRFlowable(
         width="100%",
         thickness=thickness,
-        color=PAINTS[Ink.INK],
+        color=_INK,
         spaceBefore=before,
         spaceAfter=after,
         lineCap="butt",

@@ -3,25 +3,26 @@
 from __future__ import annotations
 
 from collections.abc import Iterable, Sequence
+from dataclasses import replace
 from itertools import zip_longest
 from typing import Any
 
 from fieldlog.reports import fonts  # first: it sets reportlab's defaults  # isort: skip
-from reportlab.lib.styles import ParagraphStyle
-from reportlab.pdfbase.pdfmetrics import stringWidth
-from reportlab.platypus import Flowable, KeepTogether, Paragraph, Table, TableStyle
+from reportlab.platypus import Flowable, KeepTogether, Table, TableStyle
 
 from fieldlog.charts.scene import Ink
 from fieldlog.reports import content
+from fieldlog.reports.prose import Prose, Style, width
 from fieldlog.reports.styles import (
     CELL,
     CELL_HEAD,
     CELL_HEAD_NUMBER,
     CELL_NUMBER,
+    CELL_SOFT,
     PAINTS,
     brief,
-    markup,
-    soft,
+    paragraph,
+    span,
 )
 
 Cell = str | Flowable
@@ -31,6 +32,8 @@ _GAP = 4.0  # of white on each side of a cell's text
 # A text column is never made narrower than this, however much the others want.
 _LEAST_WIDTH = 34.0
 _EASE = 16.0
+# No line on any paper holds more characters.
+_LONGEST_LINE = 400
 # One row never takes more lines than this; what is longer goes on in rows of its own, so that pages can break.
 _MOST_LINES = 24
 
@@ -57,7 +60,7 @@ class KeptStart(KeepTogether):
 
 
 # Of every table, even one of paragraphs only: an empty cell sets its font as well.
-FACE: Look = [("FONT", (0, 0), (-1, -1), fonts.REGULAR, CELL.fontSize, CELL.leading)]
+FACE: Look = [("FONT", (0, 0), (-1, -1), fonts.REGULAR, CELL.size, CELL.leading)]
 GRID: Look = [
     *FACE,
     ("TEXTCOLOR", (0, 0), (-1, -1), PAINTS[Ink.INK]),
@@ -69,9 +72,9 @@ GRID: Look = [
 ]
 
 
-def pieces(text: str, width: float, style: ParagraphStyle = CELL) -> list[str]:
-    """Return `text` in pieces of at most so many lines of `width`, broken at spaces where there are any."""
-    most = max(int(width / (0.62 * style.fontSize)), 1) * _MOST_LINES
+def pieces(text: str, room: float, style: Style = CELL) -> list[str]:
+    """Return `text` in pieces of at most so many lines of `room`, broken at spaces where there are any."""
+    most = max(int(room / (0.62 * style.size)), 1) * _MOST_LINES
     rest, found = text, []
     while len(rest) > most or rest.count("\n") > _MOST_LINES:
         cut = min(most, *([place] if (place := _nth_break(rest)) else []))
@@ -91,32 +94,36 @@ def _nth_break(text: str) -> int:
     return place
 
 
-def cell(text: str, width: float, style: ParagraphStyle = CELL) -> Cell:
+def cell(text: str, room: float, style: Style = CELL) -> Cell:
     """Return a cell: the bare text where it fits on a line, which is much cheaper, else a paragraph."""
     printed = fonts.printable(text)
-    if "\n" not in printed and stringWidth(printed, style.fontName, style.fontSize) <= width - 2 * _GAP:
-        return printed
-    return Paragraph(markup(text), style)
+    return printed if fits(printed, room, style) else paragraph(text, style)
 
 
-def cell_rows(texts: Sequence[str], widths: Sequence[float], styles: Sequence[ParagraphStyle]) -> list[list[Cell]]:
+def fits(printed: str, room: float, style: Style) -> bool:
+    """Return whether a printable text stands on one line of `room`."""
+    return "\n" not in printed and width(printed[:_LONGEST_LINE], style.font) * style.size <= room
+
+
+def cell_rows(texts: Sequence[str], rooms: Sequence[float], styles: Sequence[Style]) -> list[list[Cell]]:
     """Return one row of cells, or several where a text is too long for one."""
-    columns = [pieces(text, width - 2 * _GAP, style) for text, width, style in zip(texts, widths, styles, strict=True)]
+    columns = [pieces(text, room, style) for text, room, style in zip(texts, rooms, styles, strict=True)]
     return [
-        [cell(text, width, style) for text, width, style in zip(row, widths, styles, strict=True)]
+        [cell(text, room, style) for text, room, style in zip(row, rooms, styles, strict=True)]
         for row in zip_longest(*columns, fillvalue="")
     ]
 
 
-def table(block: content.Table, width: float) -> Table:
+def table(block: content.Table, whole: float) -> Table:
     """Return a table of the content; every row has as many cells as there are columns."""
-    widths = _widths(block, width)
+    widths = _widths(block, whole)
+    rooms = [wide - 2 * _GAP for wide in widths]
     styles = [CELL_NUMBER if column.is_number else CELL for column in block.columns]
     rows: list[list[Cell]] = [_head(block.columns)]
     ends = []
     for texts in block.rows:
         fitted = (*texts, *[""] * len(widths))[: len(widths)]
-        rows += cell_rows(fitted, widths, styles)
+        rows += cell_rows(fitted, rooms, styles)
         ends.append(len(rows) - 1)
     look: Look = [
         *GRID,
@@ -129,41 +136,40 @@ def table(block: content.Table, width: float) -> Table:
 
 
 def _head(columns: Iterable[content.Column]) -> list[Cell]:
-    return [
-        Paragraph(
-            markup(brief(column.heading, 60)) + (f"<br/>{soft(brief(column.unit, 20))}" if column.unit else ""),
-            CELL_HEAD_NUMBER if column.is_number else CELL_HEAD,
-        )
-        for column in columns
-    ]
+    cells: list[Cell] = []
+    for column in columns:
+        style = CELL_HEAD_NUMBER if column.is_number else CELL_HEAD
+        unit = [span("\n" + brief(column.unit, 20), replace(CELL_SOFT, size=style.size))] if column.unit else []
+        cells.append(Prose((span(brief(column.heading, 60), style), *unit), style))
+    return cells
 
 
-def _widths(block: content.Table, width: float) -> list[float]:
+def _widths(block: content.Table, whole: float) -> list[float]:
     """Return the column widths: each what its longest text wants, the long ones sharing what is left."""
     wanted = [
         _wanted(column, [row[place] for row in block.rows if place < len(row)])
         for place, column in enumerate(block.columns)
     ]
-    if sum(wanted) <= width:
-        return _widened(wanted, width, [not column.is_number for column in block.columns])
-    return _squeezed(wanted, width)
+    if sum(wanted) <= whole:
+        return _widened(wanted, whole, [not column.is_number for column in block.columns])
+    return _squeezed(wanted, whole)
 
 
-def _widened(wanted: Sequence[float], width: float, is_text: Sequence[bool]) -> list[float]:
-    """Return widths that sum to `width`: a little more for every column, the rest for those of text."""
-    spare = width - sum(wanted)
+def _widened(wanted: Sequence[float], whole: float, is_text: Sequence[bool]) -> list[float]:
+    """Return widths that sum to `whole`: a little more for every column, the rest for those of text."""
+    spare = whole - sum(wanted)
     each = min(spare / len(wanted), _EASE) if any(is_text) else spare / len(wanted)
     rest = spare - each * len(wanted)
     text = sum(want for want, is_it in zip(wanted, is_text, strict=True) if is_it) or 1.0
     return [want + each + (rest * want / text if is_it else 0.0) for want, is_it in zip(wanted, is_text, strict=True)]
 
 
-def _squeezed(wanted: Sequence[float], width: float) -> list[float]:
-    """Return widths that sum to `width`: who wants less than an even share gets it, the others share alike."""
+def _squeezed(wanted: Sequence[float], whole: float) -> list[float]:
+    """Return widths that sum to `whole`: who wants less than an even share gets it, the others share alike."""
     fixed: dict[int, float] = {}
     while True:
         left = [place for place in range(len(wanted)) if place not in fixed]
-        share = (width - sum(fixed.values())) / max(len(left), 1)
+        share = (whole - sum(fixed.values())) / max(len(left), 1)
         small = {place: wanted[place] for place in left if wanted[place] <= share}
         if not small:
             return [fixed.get(place, max(share, 1.0)) for place in range(len(wanted))]
@@ -172,8 +178,8 @@ def _squeezed(wanted: Sequence[float], width: float) -> list[float]:
 
 def _wanted(column: content.Column, texts: Iterable[str]) -> float:
     words = [*column.heading.split(), column.unit]
-    head = max((stringWidth(fonts.printable(word), fonts.BOLD, CELL_HEAD.fontSize) for word in words), default=0.0)
+    head = max((width(fonts.printable(word[:60]), fonts.BOLD) for word in words), default=0.0)
     # Only the beginning of a very long text is measured: it is wrapped in any case.
-    lines = (line for text in texts for line in fonts.printable(text[:400]).split("\n"))
-    body = max((stringWidth(line, CELL.fontName, CELL.fontSize) for line in lines), default=0.0)
-    return max(head, body, _LEAST_WIDTH - 2 * _GAP) + 2 * _GAP + 0.5
+    lines = (line for text in texts for line in fonts.printable(text[:_LONGEST_LINE]).split("\n"))
+    body = max((width(line, CELL.font) for line in lines), default=0.0)
+    return max(head * CELL_HEAD.size, body * CELL.size, _LEAST_WIDTH - 2 * _GAP) + 2 * _GAP + 0.5

@@ -80,9 +80,7 @@ LINES = st.builds(ReferenceLine, WORDS, PRESSURES, st.none() | DATES, st.boolean
 @st.composite
 def ranges(draw: st.DrawFn) -> ExpectedRange:
     low, begin = draw(PRESSURES), draw(DATES)
-    return ExpectedRange(
-        low, low + draw(PRESSURES), begin, begin + timedelta(draw(st.integers(2, 900))), draw(WORDS)
-    )
+    return ExpectedRange(low, low + draw(PRESSURES), begin, begin + timedelta(draw(st.integers(2, 900))), draw(WORDS))
 
 
 @given(st.lists(series(), max_size=3), st.lists(LINES, max_size=7), st.lists(ranges(), max_size=2), SIZES)
