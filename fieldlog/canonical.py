@@ -44,9 +44,7 @@ def _normal(value: object, path: str) -> object:
     if isinstance(value, int):
         return _normal_integer(value, path)
     if isinstance(value, Mapping):
-        return {
-            _key(key, path): _normal(item, f"{path}.{key}" if path else str(key)) for key, item in value.items()
-        }
+        return {_key(key, path): _normal(item, f"{path}.{key}" if path else str(key)) for key, item in value.items()}
     if isinstance(value, Sequence) and not isinstance(value, (bytes, bytearray)):
         return [_normal(item, f"{path}[{index}]") for index, item in enumerate(value)]
     raise InputError(

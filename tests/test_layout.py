@@ -9,7 +9,7 @@ from pathlib import Path
 import click
 import pytest
 
-from fieldlog import cli
+from fieldlog.cli.main import main
 
 ROOT = Path(__file__).resolve().parent.parent
 ALLOWED_AT_TOP = {
@@ -45,13 +45,13 @@ def test_package_files_hold_nothing_but_a_docstring() -> None:
         assert re.fullmatch(r'"""[^"]+"""', text), path
 
 
-@pytest.mark.parametrize("name", sorted(cli.main.commands))
+@pytest.mark.parametrize("name", sorted(main.commands))
 def test_every_command_is_in_the_readme(name: str) -> None:
     assert f"fieldlog {name}" in (ROOT / "README.md").read_text()
 
 
 def test_every_command_has_a_help_text() -> None:
-    for name, command in cli.main.commands.items():
+    for name, command in main.commands.items():
         assert isinstance(command, click.Command)
         assert command.help, name
 

@@ -51,7 +51,9 @@ def _entries(opened: Instance, stream: BinaryIO, lines: int) -> importing.Import
 
 def _history(stream: BinaryIO, options: Options) -> HistoryFile:
     file = importing.read_history(stream, options)
-    for header in file.layout.unknown:
+    layout = file.layout
+    click.echo(f"read as {layout.encoding}, columns from line {layout.header_line}", err=True)
+    for header in layout.unknown:
         click.echo(f"column not read: {header}", err=True)
     return file
 
@@ -91,7 +93,8 @@ def _say(outcome: importing.Imported, refused: Path | None, *, dry_run: bool) ->
 
 def _list_refusals(outcome: importing.Imported) -> None:
     for refusal in outcome.refused[:_SHOWN]:
-        click.echo(f"line {refusal.line}: {refusal.message}", err=True)
+        field = "" if refusal.message.startswith(refusal.field) else f"{refusal.field}: "
+        click.echo(f"line {refusal.line}: {field}{refusal.message}", err=True)
     if len(outcome.refused) > _SHOWN:
         click.echo(f"and {len(outcome.refused) - _SHOWN} more; --refused FILE writes them all", err=True)
 

@@ -38,9 +38,7 @@ class FrictionLaw:
 INSTALLATION_STANDARD = FrictionLaw()
 
 
-def friction_loss(
-    flow_gpm: Amount, c: Amount, diameter_in: Amount, law: FrictionLaw = INSTALLATION_STANDARD
-) -> Amount:
+def friction_loss(flow_gpm: Amount, c: Amount, diameter_in: Amount, law: FrictionLaw = INSTALLATION_STANDARD) -> Amount:
     r"""Return the Hazen-Williams friction loss a foot of pipe.
 
     .. math:: p = \frac{4.52 \, Q^{1.85}}{C^{1.85} d^{4.87}}
@@ -493,9 +491,7 @@ def drain_k(diameter_in: float, length_ft: float, residual_psi: float, coefficie
     508
     """
     _amounts(length_ft=length_ft)
-    outlet_k = (
-        29.84 * float(_above_zero(coefficient=coefficient)) * float(_above_zero(diameter_in=diameter_in)) ** 2
-    )
+    outlet_k = 29.84 * float(_above_zero(coefficient=coefficient)) * float(_above_zero(diameter_in=diameter_in)) ** 2
     most_gpm = outlet_k * float(_above_zero(residual_psi=residual_psi)) ** 0.5
 
     def missing_psi(flow_gpm: float) -> float:

@@ -106,9 +106,7 @@ class SupplyCurve:
         """Return the pressure at a system flow while hose draws upstream, in psi."""
         flow, hose = np.asarray(flow_gpm, dtype=float), np.asarray(outside_hose_gpm, dtype=float)
         if not (np.all(flow >= 0) and np.all(hose >= 0)):
-            raise OutOfRangeError(
-                f"flow: {flow_gpm} gpm and hose {outside_hose_gpm} gpm; give numbers not negative"
-            )
+            raise OutOfRangeError(f"flow: {flow_gpm} gpm and hose {outside_hose_gpm} gpm; give numbers not negative")
         pressure = self.static_psi - self.a_source * (flow + hose) ** FLOW_EXPONENT
         pressure = pressure - self.a_path * flow**FLOW_EXPONENT - sum(curve.loss(flow) for curve in self.losses)
         return _as_given(pressure)
@@ -146,9 +144,7 @@ class SupplyCurve:
         last_gpm = min(max(flow for flow, _ in curve.points) for curve in self.losses)
         if not self.pressure_at(last_gpm) <= pressure_psi:
             return float("nan")
-        return float(
-            brentq(lambda flow: self.pressure_at(flow) - pressure_psi, 0.0, last_gpm, xtol=1e-10, rtol=1e-14)
-        )
+        return float(brentq(lambda flow: self.pressure_at(flow) - pressure_psi, 0.0, last_gpm, xtol=1e-10, rtol=1e-14))
 
 
 @dataclass(frozen=True, slots=True)

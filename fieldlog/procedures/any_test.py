@@ -34,7 +34,7 @@ class AnyTest(Body, frozen=True, kw_only=True):
     instruments: Annotated[tuple[Instrument, ...], Meta(title="Instruments")] = ()
     weather: Annotated[Line, Meta(title="Weather")] | None = None
     outdoor_temperature: Annotated[Temperature, Meta(title="Outdoor temperature")] | None = None
-    valves: Annotated[tuple[ValveFound, ...], Meta(title="Valves the water passed")] = ()
+    valves: Annotated[tuple[ValveFound, ...], Meta(title="Valves on the way of the water")] = ()
     pump_state: Annotated[PumpState, Meta(title="Fire pump")] | None = None
     tank_level: Annotated[Length, Meta(title="Tank level")] | None = None
     as_found: Annotated[Words, Meta(title="As found")] | None = None

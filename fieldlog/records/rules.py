@@ -37,9 +37,7 @@ SatisfiedBy = Literal[
     "gauge_comparison",
 ]  # fmt: skip
 FeedDevice = Literal["backflow_preventer", "pressure_reducing_valve"]
-TriggerEvent = Literal[
-    "valve reopened", "repair", "feed changed", "drain changed", "extension", "impairment ended"
-]
+TriggerEvent = Literal["valve reopened", "repair", "feed changed", "drain changed", "extension", "impairment ended"]
 
 _MONTHS_OF_UNIT = {"month": 1, "year": 12}
 _DAYS_OF_UNIT = {"day": 1, "week": 7}
@@ -102,9 +100,7 @@ class Frequency(_Part, frozen=True, kw_only=True):
         if self.gap_unit is None:
             return
         if (self.gap_unit == "month") != (self.unit in _MONTHS_OF_UNIT):
-            raise ValueError(
-                f"gaps in {self.gap_unit}s don't go with {self.unit}s; months with years, days with weeks"
-            )
+            raise ValueError(f"gaps in {self.gap_unit}s don't go with {self.unit}s; months with years, days with weeks")
         interval = self.every * (_MONTHS_OF_UNIT | _DAYS_OF_UNIT)[self.unit]
         if not (self.least or 0) <= interval <= (self.most or interval):
             raise ValueError(f"the interval of {interval} {self.gap_unit}s is not within its gaps")

@@ -123,6 +123,4 @@ class SystemStatement:
     @property
     def worst(self) -> Statement:
         """The worse of what is said now and what still stands from earlier."""
-        return min(
-            (said for said in (self.statement, self.earlier) if said is not None), key=lambda said: said.rank
-        )
+        return min((said for said in (self.statement, self.earlier) if said is not None), key=lambda said: said.rank)

@@ -143,9 +143,7 @@ def _merged(folder: Traversable, name: str, seen: tuple[str, ...]) -> Merged:
     below = _merged(folder, file.catalogue.based_on, (*seen, name))
     twice = own_rows.keys() & below.rows.keys()
     if twice:
-        raise ConfigError(
-            f"rules file {name}.toml: rows {', '.join(sorted(twice))} stand there already; use a cell"
-        )
+        raise ConfigError(f"rules file {name}.toml: rows {', '.join(sorted(twice))} stand there already; use a cell")
     taken = {row_id: _taken_over(cell, below, file.catalogue) for row_id, cell in below.cells.items()}
     intervals = {word: _interval_taken_over(item, file.catalogue) for word, item in below.intervals.items()}
     return Merged(
@@ -188,14 +186,10 @@ def _require_known(merged: Merged, name: str) -> None:
         raise ConfigError(f"rules file {name}.toml holds rows for other files; load one that has an edition")
     strange = merged.cells.keys() - merged.rows.keys()
     if strange:
-        raise ConfigError(
-            f"rules file {name}.toml: cells {', '.join(sorted(strange))} have no row; mend their ids"
-        )
+        raise ConfigError(f"rules file {name}.toml: cells {', '.join(sorted(strange))} have no row; mend their ids")
     silent = [row_id for row_id, row in merged.rows.items() if "mark" not in row and row_id not in merged.cells]
     if silent:
-        raise ConfigError(
-            f"rules file {name}.toml: rows {', '.join(silent)} have no cell; give one, or say absent"
-        )
+        raise ConfigError(f"rules file {name}.toml: rows {', '.join(silent)} have no cell; give one, or say absent")
 
 
 def _rule(merged: Merged, row_id: str, name: str) -> Rule:

@@ -40,6 +40,7 @@ from fieldlog.wording.statements import (
     blind_loss_sentence,
     deciding_margin,
     demand_sentence,
+    digits_of,
     statement_sentence,
     ten_percent_sentence,
 )
@@ -163,7 +164,7 @@ def reason_sentences(scope: Scope, said: SystemStatement) -> Iterator[str]:
 
 def _blind(scope: Scope, said: SystemStatement) -> Iterator[str]:
     if said.blind_loss is not None:
-        yield blind_loss_sentence(said.blind_loss, scope.units)
+        yield blind_loss_sentence(said.blind_loss, scope.units, finer=digits_of(said, scope.units))
 
 
 def _several(scope: Scope) -> bool:

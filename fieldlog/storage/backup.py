@@ -45,8 +45,7 @@ def back_up(source: Path, target: Path, progress: Progress | None = None) -> Bac
         if result.fault is not None:
             unsound = unfinished.replace(target.with_name(target.name + ".unsound"))
             raise BrokenLogError(
-                f"the copy was made, but {result.fault.message}; it is kept as {unsound}; "
-                "run `fieldlog check-log`",
+                f"the copy was made, but {result.fault.message}; it is kept as {unsound}; run `fieldlog check-log`",
                 number=result.fault.number,
             )
     return Backup(target, result.checked, result.head, target.stat().st_size)

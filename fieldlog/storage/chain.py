@@ -52,9 +52,7 @@ def link(number: int, received_at: str, previous: str, sha256: str) -> str:
 
 
 @at_the_edge
-def check(
-    connection: Connection, progress: Progress | None = None, expected_head: str | None = None
-) -> CheckResult:
+def check(connection: Connection, progress: Progress | None = None, expected_head: str | None = None) -> CheckResult:
     """Walk the whole chain and return the first fault, if there is one.
 
     Each text is hashed again, each link computed again, each column compared with its text, and `current`
@@ -161,9 +159,7 @@ class _CurrentTable:
             return None
         first: Row = min(faulty, key=itemgetter(0))
         row = CurrentRow._make(first)
-        message = (
-            f"the version in force of {row.subject} differs from what its entries say; run `fieldlog rebuild`"
-        )
+        message = f"the version in force of {row.subject} differs from what its entries say; run `fieldlog rebuild`"
         return Fault(row.first, row.subject, "current", message)
 
     def _row_of(self, first: int) -> Row | None:

@@ -46,9 +46,7 @@ class Appended:
 @at_the_edge
 def head(connection: Connection) -> Head:
     """Return the newest entry's place in the chain."""
-    found = connection.execute(
-        "select number, link, received_at from entries order by number desc limit 1"
-    ).fetchone()
+    found = connection.execute("select number, link, received_at from entries order by number desc limit 1").fetchone()
     return Head(*found) if found else Head(0, FIRST_LINK, "")
 
 
@@ -217,9 +215,7 @@ class _Step:
 
     def _no_subject(self, envelope: Envelope, field: str, named: str) -> Refusal | _Waits:
         on_file = self._on_file.get(named)
-        found = (
-            on_file or self._connection.execute("select subject from entries where uid = ?", (named,)).fetchone()
-        )
+        found = on_file or self._connection.execute("select subject from entries where uid = ?", (named,)).fetchone()
         if found is None:
             return _Waits(named, field)
         return _refusal(envelope, field, f"{named} is a later version of {found[0]}; name that subject")
@@ -233,9 +229,7 @@ class _Step:
             return None
         based_on = self._on_file.get(envelope.based_on)
         if based_on is None or based_on[0] != envelope.subject:
-            return _refusal(
-                envelope, "based_on", "is no earlier version of this subject; name the one it replaces"
-            )
+            return _refusal(envelope, "based_on", "is no earlier version of this subject; name the one it replaces")
         before = self._rows[envelope.subject]
         for field, was, now in (
             ("kind", before.kind, envelope.kind),
@@ -320,9 +314,7 @@ def _place(envelope: Envelope) -> tuple[str | None, str | None, str | None]:
 
 
 def _waiting(text: _Text, waits: _Waits) -> WaitingText:
-    return WaitingText(
-        text.envelope.uid, text.text, text.sha256, text.signature, text.via, text.arrived_at, *waits
-    )
+    return WaitingText(text.envelope.uid, text.text, text.sha256, text.signature, text.via, text.arrived_at, *waits)
 
 
 def _refusal(envelope: Envelope, field: str, mend: str) -> Refusal:

@@ -56,8 +56,7 @@ def keep(connection: Connection, refused: Sequence[RefusedText]) -> None:
 
 
 _KEPT = (
-    "select id, uid, code, field, message, text, received_at, via, author, site, device, device_number "
-    "from refusals "
+    "select id, uid, code, field, message, text, received_at, via, author, site, device, device_number from refusals "
 )
 
 

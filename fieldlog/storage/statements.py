@@ -33,9 +33,7 @@ def put(
         "valid_until, statement) values (?, ?, ?, ?, ?, ?, ?, ?, ?)",
         [_row(supply, site, each) for each in statements],
     )
-    connection.execute(
-        "delete from dirty_supplies where supply = ? and since_number <= ?", (supply, through_number)
-    )
+    connection.execute("delete from dirty_supplies where supply = ? and since_number <= ?", (supply, through_number))
     connection.execute(
         "insert into judged_supplies (supply, through_number, valid_until) values (?, ?, ?) "
         "on conflict (supply) do update set through_number = excluded.through_number, "
