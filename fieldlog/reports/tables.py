@@ -42,7 +42,7 @@ _LEAST_BEGUN = 88.0
 
 
 class KeptStart(KeepTogether):
-    """Titles kept with what follows; of a table that is its first rows, not the whole of it."""
+    """Titles kept with what follows; of a table or a long text that is its beginning, not the whole of it."""
 
     def __init__(self, flowables: Sequence[Flowable]) -> None:
         super().__init__(list(flowables))
@@ -51,7 +51,7 @@ class KeptStart(KeepTogether):
     def split(self, aW: float, aH: float) -> list[Flowable]:  # noqa: N803  reportlab's names
         """Return what goes on this page and what goes on the next."""
         *titles, last = self._kept
-        if isinstance(last, Table):
+        if isinstance(last, (Table, Prose)):
             heights = [flowable.wrapOn(self.canv, aW, aH)[1] + flowable.getSpaceAfter() for flowable in titles]
             whole = last.wrapOn(self.canv, aW, aH)[1]
             if sum(heights) + min(whole, _LEAST_BEGUN) <= aH:
@@ -77,7 +77,7 @@ def pieces(text: str, room: float, style: Style = CELL) -> list[str]:
     most = max(int(room / (0.62 * style.size)), 1) * _MOST_LINES
     rest, found = text, []
     while len(rest) > most or rest.count("\n") > _MOST_LINES:
-        cut = min(most, *([place] if (place := _nth_break(rest)) else []))
+        cut = min(most, _nth_break(rest) or most)
         space = rest.rfind(" ", cut // 2, cut)
         cut = space if space > 0 else cut
         found.append(rest[:cut])
@@ -86,6 +86,7 @@ def pieces(text: str, room: float, style: Style = CELL) -> list[str]:
 
 
 def _nth_break(text: str) -> int:
+    """Return the place after as many typed breaks as a row may hold, or 0 where there are fewer."""
     place = 0
     for _ in range(_MOST_LINES):
         place = text.find("\n", place) + 1
