@@ -11,8 +11,8 @@ from fieldlog.services.people import Role
 
 ORGANISATION = "Demonstration Fire Protection Contractor"
 PEOPLE: tuple[tuple[str, str, Role, str | None], ...] = (
-    ("technician-a", "Technician A", "technician", "licence DEMO-1"),
-    ("technician-b", "Technician B", "technician", "licence DEMO-2"),
+    ("technician-a", "Technician A", "technician", "DEMO-1"),
+    ("technician-b", "Technician B", "technician", "DEMO-2"),
     ("office-a", "Office A", "office", None),
     ("owner-a", "Owner's representative A", "owner", None),
 )

@@ -69,7 +69,7 @@ def build(made: Instance, at: datetime, progress: Callable[[int], None]) -> Demo
 def enter_history(made: Instance, at: datetime, progress: Callable[[int], None]) -> None:
     """Enter the organisation, its people, its sites and ten years of visits."""
     as_of = at.date()
-    body = Organisation(name=scenario.ORGANISATION, address="7 Example Yard", licence="firm licence DEMO-0")
+    body = Organisation(name=scenario.ORGANISATION, address="7 Example Yard", licence="DEMO-0")
     instance.found_organisation(made, body, uid=ORGANISATION, at=at)
     pen = Pen()
     registry.write_people(pen, scenario.ago(as_of, 10.3))

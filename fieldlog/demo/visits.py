@@ -124,7 +124,7 @@ def _is_due(site: SitePlan, system: SystemPlan, on: date, as_of: date) -> bool:
 
 def _signed(site: SitePlan, on: date, author: str, tests: list[Written]) -> SignOff:
     name = {"technician-a": "Technician A", "technician-b": "Technician B"}[author]
-    licence = {"technician-a": "licence DEMO-1", "technician-b": "licence DEMO-2"}[author]
+    licence = {"technician-a": "DEMO-1", "technician-b": "DEMO-2"}[author]
     owner = Signer(role="owner's representative", name="Owner's representative A", strokes=squiggle(on.toordinal() + 7))
     technician = Signer(
         role="technician", name=name, person=uid_of(author), licence=licence, strokes=squiggle(on.toordinal())
