@@ -105,7 +105,7 @@ def _of_newest(gauge: Gauge, own: Sequence[GaugeReading], instruments: Instrumen
 def _of_comparison(gauge: Gauge, profile: RuleProfile | None, as_of: date) -> Iterator[Reason]:
     percent = None if profile is None else profile.gauge_accuracy_percent_full_scale()
     done = [one for one in gauge.comparisons if one.performed_on <= as_of and one.outcome in {"kept", None}]
-    if percent is None or not done or gauge.full_scale_psi is None:
+    if percent is None or not done or gauge.full_scale_psi is None or not gauge.full_scale_psi > 0:
         return
     worst_psi = max((shown - reference for reference, shown in done[-1].points_psi), key=abs, default=0.0)
     if is_out_of_accuracy(worst_psi, gauge.full_scale_psi, float(percent)):

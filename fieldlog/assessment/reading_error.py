@@ -38,7 +38,7 @@ class Instruments:
         """Return the larger of the recorded division and the heap; None where neither is known."""
         gauge = self.gauge(reading)
         known = [gauge.division_psi if gauge is not None else None, self.heaps.get(id(reading))]
-        return max((size for size in known if size is not None), default=None)
+        return max((size for size in known if size is not None and size > 0), default=None)
 
     def sigma_psi(self, reading: Reading, division_psi: float | None = None) -> float:
         """Return the 1-sigma error of a reading; `division_psi` asks what another gauge would give."""
@@ -153,7 +153,7 @@ def gauge_bias(gauge: Gauge | None, mean_psi: float, on: date) -> Bias:
     ASME B40.100 (percent of span by quarter); DEVELOPERS.md, Method §1.
     """
     full_scale = constants.UNKNOWN_FULL_SCALE_PSI
-    if gauge is not None and gauge.full_scale_psi is not None:
+    if gauge is not None and gauge.full_scale_psi is not None and gauge.full_scale_psi > 0:
         full_scale = gauge.full_scale_psi
     compared = _newest_comparison(gauge, on)
     if compared is not None and gauge is not None:
