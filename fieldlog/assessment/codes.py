@@ -80,6 +80,7 @@ class ReasonCode(StrEnum):
     TRAPPED_PRESSURE = "trapped_pressure"  # static_before_psi, static_after_psi
     DIVISION_UNKNOWN = "division_unknown"  # gauge?, assumed_psi
     HEAPED_READINGS = "heaped_readings"  # step_psi
+    OLDER_TESTS_LEFT_OUT = "older_tests_left_out"  # tests: beyond the newest 200 and the acceptance tests
     GAUGE_REPLACED = "gauge_replaced"  # sigma_psi: a new gauge may read differently by so much
     INDEX_SMALLER_THAN_READ = "index_smaller_than_read"  # drop_psi, limit_psi
     RESIDUAL_ABOVE_STATIC = "residual_above_static"  # residual_psi, static_psi

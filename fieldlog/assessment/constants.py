@@ -66,3 +66,6 @@ BLIND_NONLINEAR = 0.35
 BLIND_ROUNDS = 200
 BLIND_TOLERANCE_PSI = 1e-6
 FINE_GAUGE_DIVISION_PSI = 0.5
+
+# Window (§9, cost): the newest tests of a system that are judged by, with every acceptance test
+MOST_TESTS = 200

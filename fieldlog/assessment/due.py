@@ -123,9 +123,7 @@ def _is_untracked(rule: Rule, history: SupplyHistory, as_of: date) -> bool:
     if not is_asked or is_kept_whole:
         return False
     standing = [Facts(history.supply, system) for system in _standing(history, as_of)]
-    return any(
-        unstated_facts(rule.applies_when, facts) is not None for facts in standing or [Facts(history.supply)]
-    )
+    return any(unstated_facts(rule.applies_when, facts) is not None for facts in standing or [Facts(history.supply)])
 
 
 def _parts(rule: Rule, history: SupplyHistory, as_of: date) -> list[Part]:
@@ -179,15 +177,11 @@ def _joined(parts: list[Part]) -> Part:
 
 
 def _gauge_parts(rule: Rule, history: SupplyHistory, as_of: date) -> list[Part]:
-    supply_gauges = [
-        part for gauge in history.supply_gauges for part in _supply_gauge(rule, history, gauge, as_of)
-    ]
+    supply_gauges = [part for gauge in history.supply_gauges for part in _supply_gauge(rule, history, gauge, as_of)]
     covered = {system.uid for part in supply_gauges for system in part.systems}
     found: list[Part] = []
     for system in _standing(history, as_of):
-        own = [
-            part for gauge in system.gauges if stood(gauge, as_of) for part in _one(rule, history, system, gauge)
-        ]
+        own = [part for gauge in system.gauges if stood(gauge, as_of) for part in _one(rule, history, system, gauge)]
         # A system without such a gauge on record is named all the same: its gauge is there but not on file.
         found += own or ([] if system.uid in covered else _one(rule, history, system, None))
     return found + supply_gauges
@@ -219,9 +213,7 @@ def _by_frequency(rule: Rule, part: Part, history: SupplyHistory, as_of: date) -
     yield item
 
 
-def _by_trigger(
-    rule: Rule, trigger: Trigger, part: Part, history: SupplyHistory, as_of: date
-) -> Iterator[DueItem]:
+def _by_trigger(rule: Rule, trigger: Trigger, part: Part, history: SupplyHistory, as_of: date) -> Iterator[DueItem]:
     done = last_done(rule, part, history, as_of)
     first: dict[str | None, Event] = {}
     for event in sorted(

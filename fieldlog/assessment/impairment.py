@@ -213,7 +213,7 @@ def _of_fall(compared: Comparisons, instruments: Instruments, bands: Expected | 
 
 
 def _fell(newest: DrainTest, other: DrainTest) -> bool:
-    if newest.residual is None or other.residual is None:
+    if newest.residual is None or other.residual is None or not other.residual.exact_psi > 0:
         return False
     left = 100 - constants.QUARTER_PERCENT
     return 100 * newest.residual.exact_psi <= left * other.residual.exact_psi

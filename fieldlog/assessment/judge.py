@@ -6,6 +6,7 @@ from collections.abc import Iterable, Sequence
 from dataclasses import dataclass, field, replace
 from datetime import date, datetime, timedelta
 
+from fieldlog.assessment import constants
 from fieldlog.assessment.alarm_times import alarm_findings
 from fieldlog.assessment.blind_loss import blind_loss
 from fieldlog.assessment.codes import ReasonCode
@@ -41,6 +42,7 @@ class _Scene:
     profile: RuleProfile | None
     as_of: date
     conditions: Conditions
+    left_out: int  # older tests beyond the window
     found: dict[int, Index | None] = field(default_factory=dict)  # by id of the test
 
     @property
@@ -87,10 +89,20 @@ def judge(
     gauges = instruments(known, as_of)
     later = next_record_after(history, as_of)
     said = []
-    for system in known.systems:
-        scene = _Scene(known, system, profile, as_of, conditions_of(known.supply, system, gauges))
+    for whole in known.systems:
+        system = _windowed(whole)
+        conditions = conditions_of(known.supply, system, gauges)
+        left_out = len(whole.drain_tests) - len(system.drain_tests)
+        scene = _Scene(known, system, profile, as_of, conditions, left_out)
         said.append(_judge(scene, version, later))
     return tuple(said)
+
+
+def _windowed(system: System) -> System:
+    """Return the system with its newest tests and every acceptance test: more would only cost time."""
+    tests = system.drain_tests
+    kept = [test for test in tests[: -constants.MOST_TESTS] if test.standing == "acceptance"]
+    return replace(system, drain_tests=(*kept, *tests[-constants.MOST_TESTS :]))
 
 
 def _judge(scene: _Scene, version: str, later: date | None) -> SystemStatement:
@@ -127,6 +139,7 @@ def _evidence(scene: _Scene, tests: Sequence[DrainTest]) -> Evidence:
     plain = Evidence(
         scene.history.supply, scene.system, scene.instruments, scene.profile, scene.as_of, measured,
         impairment=(*signs, *on_record(scene.system, scene.profile, scene.as_of)),
+        left_out=scene.left_out,
     )  # fmt: skip
     return _with_newest(scene, plain, read) if read else plain
 

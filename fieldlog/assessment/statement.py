@@ -42,6 +42,7 @@ class Evidence:
     impairment: tuple[Reason, ...] = ()  # signs that stand
     gauge_sigma_psi: float = 0.0  # of a gauge replaced since
     drain_k: float | None = None
+    left_out: int = 0  # older tests that are not judged by
 
 
 @dataclass(frozen=True, slots=True)
@@ -218,8 +219,15 @@ def _beside(evidence: Evidence) -> Iterator[Reason]:
         yield Reason(ReasonCode.DRAIN_INDEX, numbers, (newest.test.entry,), "4")
     yield from _reading_notes(evidence)
     yield from _set_points(evidence)
+    yield from _circumstances(evidence, compared)
+
+
+def _circumstances(evidence: Evidence, compared: Comparisons) -> Iterator[Reason]:
+    newest = evidence.newest
+    if evidence.left_out:
+        yield Reason(ReasonCode.OLDER_TESTS_LEFT_OUT, {"tests": evidence.left_out}, (), "9")
     if newest is not None and newest.level_psi != 0:
-        numbers = {"correction_psi": -newest.level_psi}
+        numbers: dict[str, Number] = {"correction_psi": -newest.level_psi}
         yield Reason(ReasonCode.TANK_LEVEL_CORRECTED, numbers, (newest.test.entry,), "2")
     if evidence.gauge_sigma_psi > 0:
         numbers = {"sigma_psi": evidence.gauge_sigma_psi}

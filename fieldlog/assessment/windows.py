@@ -82,9 +82,7 @@ def _calendar_window(frequency: Frequency, last: date | None, as_of: date) -> Wi
     start = _period_start(frequency, as_of if last is None else last)
     if last is not None:
         start = add(start, frequency.every, frequency.unit)
-    return Window(
-        earliest=start, due=start, latest=add(start, frequency.every, frequency.unit) - timedelta(days=1)
-    )
+    return Window(earliest=start, due=start, latest=add(start, frequency.every, frequency.unit) - timedelta(days=1))
 
 
 def _period_start(frequency: Frequency, day: date) -> date:

@@ -150,6 +150,9 @@ SENTENCES: Mapping[str, tuple[str, ...]] = {
         "that "
         "step",
     ),
+    Code.OLDER_TESTS_LEFT_OUT: (
+        "Judged by the newest 200 main drain tests and every acceptance test; older ones on file: {tests}",
+    ),
     Code.GAUGE_REPLACED: (
         "The gauge was replaced; by an estimate the new one may read differently by {sigma_psi:read} (one "
         "standard "

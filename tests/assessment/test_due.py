@@ -182,9 +182,7 @@ def test_a_system_asks_nothing_of_a_supply_it_has_left() -> None:
 
 
 def test_a_test_after_the_day_asked_is_not_known() -> None:
-    held = history(
-        wet(drain_tests=(drained(date(2023, 5, 6)), drained(date(2025, 5, 6), 61))), profiles=(profile(),)
-    )
+    held = history(wet(drain_tests=(drained(date(2023, 5, 6)), drained(date(2025, 5, 6), 61))), profiles=(profile(),))
     assert only(held, "main_drain.each").last_done == date(2023, 5, 6)
 
 
@@ -261,8 +259,7 @@ def test_one_test_serves_the_systems_of_a_header_from_2011_on() -> None:
         wet("c"),
     )
     found = {
-        item.systems: item.last_entry
-        for item in items(history(*systems, profiles=(profile(),)), "main_drain.each")
+        item.systems: item.last_entry for item in items(history(*systems, profiles=(profile(),)), "main_drain.each")
     }
     assert found == {("a", "b"): 57, ("c",): None}
 
@@ -297,9 +294,7 @@ def test_air_gauges_follow_supervision_and_name_it_where_it_is_not_on_record(
     water = Gauge(uid="water", entry=10, of="system", owner="dry", side="supply")
     dry = wet("dry", type="dry", air_supervised=supervised, gauges=(air, water))
     found = [
-        item
-        for item in one_list(history(dry, profiles=(profile(),))).items
-        if item.rule.startswith("gauge_reading")
+        item for item in one_list(history(dry, profiles=(profile(),))).items if item.rule.startswith("gauge_reading")
     ]
     assert sorted(item.rule for item in found) == rules
     assert {item.gauge for item in found} == {"air"}
@@ -487,9 +482,7 @@ def test_a_trip_without_an_alarm_time_is_no_alarm_test() -> None:
 
 
 def test_a_flow_test_counts_for_the_supply_and_a_pump_test_only_at_the_test_header() -> None:
-    street = FlowTest(
-        entry=96, performed_on=date(2024, 4, 18), at="street", static_psi=72.0, points=((940.0, 55.0),)
-    )
+    street = FlowTest(entry=96, performed_on=date(2024, 4, 18), at="street", static_psi=72.0, points=((940.0, 55.0),))
     header = replace(street, entry=97, performed_on=date(2023, 4, 18), at="test_header")
     supply = Supply(uid="main", entry=5, name="pump", kind="fire_pump")
     profiles = (profile("european_insurers"),)
@@ -500,9 +493,7 @@ def test_a_flow_test_counts_for_the_supply_and_a_pump_test_only_at_the_test_head
 
 def test_a_forward_flow_test_answers_the_backflow_row() -> None:
     test = ForwardFlowTest(entry=98, performed_on=date(2023, 10, 2), item="bfp", flow_gpm=600.0)
-    supply = Supply(
-        uid="main", entry=5, name="main", kind="public_main", backflow_preventer="one of several feeds"
-    )
+    supply = Supply(uid="main", entry=5, name="main", kind="public_main", backflow_preventer="one of several feeds")
     held = history(wet(forward_flow_tests=(test,)), supply=supply, profiles=(profile(),))
     item = only(held, "backflow.forward_flow")
     assert (item.last_entry, item.due, item.state) == (98, date(2024, 10, 2), "not yet")
@@ -656,13 +647,5 @@ def test_the_order_of_entries_changes_nothing(as_of: date, ago_days: int) -> Non
     forth = history(wet("a", drain_tests=drains), wet("b"), profiles=(ever,))
     back = history(wet("b"), wet("a", drain_tests=drains[::-1]), profiles=(ever,))
     assert {
-        item
-        for due in due_lists(forth, as_of)
-        for item in due.items
-        if item.gauge is None and len(item.systems) == 1
-    } == {
-        item
-        for due in due_lists(back, as_of)
-        for item in due.items
-        if item.gauge is None and len(item.systems) == 1
-    }
+        item for due in due_lists(forth, as_of) for item in due.items if item.gauge is None and len(item.systems) == 1
+    } == {item for due in due_lists(back, as_of) for item in due.items if item.gauge is None and len(item.systems) == 1}

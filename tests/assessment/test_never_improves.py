@@ -373,7 +373,7 @@ def walk(value: Any) -> Any:
 
 
 @pytest.mark.slow
-@settings(max_examples=150, deadline=None)
+@settings(max_examples=60, deadline=None)
 @given(any_histories(), st.booleans())
 def test_any_records_at_all_give_a_statement_that_can_be_kept(given_history: SupplyHistory, has_profile: bool) -> None:
     known = replace(given_history, profiles=(PROFILE,))

@@ -60,9 +60,7 @@ def test_windows_worked_by_hand(frequency: Frequency, last: date, expected: tupl
 
 
 def test_grace_lengthens_the_window_and_nothing_else() -> None:
-    lenient = Frequency(
-        every=1, unit="year", anchor="last done", least=9, most=15, gap_unit="month", grace_days=20
-    )
+    lenient = Frequency(every=1, unit="year", anchor="last done", least=9, most=15, gap_unit="month", grace_days=20)
     assert window(lenient, date(2024, 3, 15), date(2025, 7, 4)) == ("2024-12-15", "2025-03-15", "2025-07-05")
 
 
@@ -149,15 +147,11 @@ def test_a_season_cuts_the_early_part_of_a_window_and_leaves_its_end() -> None:
 
 def test_a_season_without_months_rests_nowhere() -> None:
     anytime = Frequency(every=1, unit="week", anchor="calendar", season=Season(name="cold weather"))
-    assert window(anytime, date(2024, 7, 10), date(2024, 7, 11)) == window(
-        WEEKLY, date(2024, 7, 10), date(2024, 7, 11)
-    )
+    assert window(anytime, date(2024, 7, 10), date(2024, 7, 11)) == window(WEEKLY, date(2024, 7, 10), date(2024, 7, 11))
 
 
 @given(last=DAYS, as_of=DAYS, frequency=st.sampled_from(ALL))
-def test_every_window_begins_after_the_last_time_and_is_in_order(
-    last: date, as_of: date, frequency: Frequency
-) -> None:
+def test_every_window_begins_after_the_last_time_and_is_in_order(last: date, as_of: date, frequency: Frequency) -> None:
     found = next_window(frequency, last, None, as_of)
     assert found is not None
     assert last < (found.earliest or found.due) <= found.due <= found.latest
