@@ -61,9 +61,7 @@ def number_label(value: float) -> str:
     return "0" if text in {"-0", ""} else text.replace("-", "−")
 
 
-def spaced_labels(
-    scale: Scale, values: Sequence[float], labels: Sequence[str], size: float
-) -> list[tuple[float, str]]:
+def spaced_labels(scale: Scale, values: Sequence[float], labels: Sequence[str], size: float) -> list[tuple[float, str]]:
     """Return those (value, label) whose centred labels keep a distance; the ends are kept before the middle."""
     kept: list[tuple[float, float, str]] = []
     pairs = list(zip(values, labels, strict=True))

@@ -29,10 +29,7 @@ class Box:
     def touches(self, other: Box) -> bool:
         """Return whether the two share any area."""
         return (
-            self.left < other.right
-            and other.left < self.right
-            and self.top < other.bottom
-            and other.top < self.bottom
+            self.left < other.right and other.left < self.right and self.top < other.bottom and other.top < self.bottom
         )
 
     def within(self, other: Box) -> bool:
@@ -136,9 +133,7 @@ class Surroundings:
         """
         leader = (point, _nearest(point, box))
         roomy = _grown(box, 0.25 * size)
-        if not roomy.within(self.room) or any(
-            roomy.touches(other) or _crosses(other, *leader) for other in self.taken
-        ):
+        if not roomy.within(self.room) or any(roomy.touches(other) or _crosses(other, *leader) for other in self.taken):
             return None
         under = sum(_crosses(roomy, *stroke) for stroke in self.strokes)
         return _length(*leader) / size + _STROKE_COST * under

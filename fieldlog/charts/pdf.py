@@ -95,9 +95,7 @@ def _dot(canvas: Canvas, dot: Dot) -> None:
 def _text(canvas: Canvas, text: Text, typefaces: Typefaces) -> None:
     words = typefaces.printable(text.text)
     canvas.setFont(typefaces.bold if text.is_bold else typefaces.regular, text.size)
-    put = {"start": canvas.drawString, "middle": canvas.drawCentredString, "end": canvas.drawRightString}[
-        text.anchor
-    ]
+    put = {"start": canvas.drawString, "middle": canvas.drawCentredString, "end": canvas.drawRightString}[text.anchor]
     if text.has_halo:
         canvas.setDash([])
         canvas.setLineJoin(1)

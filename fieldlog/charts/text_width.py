@@ -32,9 +32,7 @@ def text_width(text: str, size: float, *, is_bold: bool = False) -> float:
     return size * sum(widths.get(character, _OTHER_EM) for character in text)
 
 
-def wrapped(
-    text: str, size: float, width: float, *, most_lines: int = 2, is_bold: bool = False
-) -> tuple[str, ...]:
+def wrapped(text: str, size: float, width: float, *, most_lines: int = 2, is_bold: bool = False) -> tuple[str, ...]:
     """Return `text` in lines not wider than `width`; what is too long ends in an ellipsis."""
     lines: list[str] = []
     for word in text[:_MOST_CHARACTERS].split():
