@@ -21,7 +21,7 @@ _FOOT_IN_M = Fraction("0.3048")
 _SQUARE_FOOT_IN_M2 = _FOOT_IN_M**2
 
 DecimalText = Annotated[
-    str, msgspec.Meta(pattern=r"^-?(0|[1-9][0-9]{0,8})(\.[0-9]{1,9})?$", title="decimal number as text")
+    str, msgspec.Meta(pattern=r"^-?(0|[1-9][0-9]{0,8})(\.[0-9]{1,9})?(?!\n)$", title="decimal number as text")
 ]
 
 

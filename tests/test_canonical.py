@@ -15,9 +15,7 @@ plain = st.recursive(
     st.booleans() | st.integers(-(2**53) + 1, 2**53 - 1) | st.text(st.characters(exclude_categories=["Cs"])),
     lambda inner: (
         st.lists(inner, max_size=4)
-        | st.dictionaries(
-            st.text(st.characters(max_codepoint=126, min_codepoint=32), max_size=6), inner, max_size=4
-        )
+        | st.dictionaries(st.text(st.characters(max_codepoint=126, min_codepoint=32), max_size=6), inner, max_size=4)
     ),
     max_leaves=20,
 )

@@ -145,7 +145,7 @@ def index_sigma(drop_psi: float, residual_psi: float, static_sigma_psi: float, r
     Examples
     --------
     >>> round(index_sigma(15, 65, 0.5, 0.8), 4)
-    0.0231
+    0.023
     """
     slope = 1 + formulas.INDEX_EXPONENT * drop_psi / residual_psi
     return float(math.hypot(static_sigma_psi, residual_sigma_psi * slope) / residual_psi**formulas.INDEX_EXPONENT)

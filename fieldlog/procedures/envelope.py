@@ -3,16 +3,25 @@
 from __future__ import annotations
 
 import json
-from typing import Annotated, Any, Literal
+from datetime import datetime
+from typing import Annotated, Any, Literal, get_args
 
 import msgspec
 
 from fieldlog.canonical import canonical_text
 from fieldlog.errors import InputError
+from fieldlog.procedures.shape_words import shape_refusal
 
-Uid = Annotated[str, msgspec.Meta(pattern=r"^[0-9a-f]{8}-[0-9a-f]{4}-[1-8][0-9a-f]{3}-[89ab][0-9a-f]{3}-[0-9a-f]{12}$")]
-Timestamp = Annotated[str, msgspec.Meta(pattern=r"^[0-9]{4}-[0-9]{2}-[0-9]{2}T[0-9]{2}:[0-9]{2}:[0-9]{2}Z$")]
-Sha256 = Annotated[str, msgspec.Meta(pattern=r"^[0-9a-f]{64}$")]
+# A bare $ would let a line break through at the end; (?!\n)$ means the end in Python and in JavaScript.
+Uid = Annotated[
+    str, msgspec.Meta(pattern=r"^[0-9a-f]{8}-[0-9a-f]{4}-[1-8][0-9a-f]{3}-[89ab][0-9a-f]{3}-[0-9a-f]{12}(?!\n)$")
+]
+Timestamp = Annotated[str, msgspec.Meta(pattern=r"^[0-9]{4}-[0-9]{2}-[0-9]{2}T[0-9]{2}:[0-9]{2}:[0-9]{2}Z(?!\n)$")]
+Sha256 = Annotated[str, msgspec.Meta(pattern=r"^[0-9a-f]{64}(?!\n)$")]
+# One line that shows something; several lines. Neither holds what would steer a terminal or break a document.
+LINE = r"^(?=.*\S)[^\x00-\x1f\x7f-\x9f\u2028\u2029]+(?!\n)$"
+WORDS = r"^[^\x00-\x08\x0b\x0c\x0e-\x1f\x7f-\x9f]*$"
+Words = Annotated[str, msgspec.Meta(min_length=1, max_length=4000, pattern=WORDS)]
 
 Kind = Literal[
     "organisation", "person", "site", "supply", "system", "gauge", "design_record", "rule_profile", "visit",
@@ -37,7 +46,7 @@ class Envelope(msgspec.Struct, frozen=True, forbid_unknown_fields=True, omit_def
     system: Uid | None = None
     visit: Uid | None = None
     based_on: Uid | None = None
-    reason: Annotated[str, msgspec.Meta(min_length=1, max_length=2000)] | None = None
+    reason: Annotated[str, msgspec.Meta(min_length=1, max_length=2000, pattern=WORDS)] | None = None
     withdrawn: Literal[True] | None = None
     device: Uid | None = None
     device_number: Annotated[int, msgspec.Meta(ge=1)] | None = None
@@ -58,37 +67,10 @@ def parse_envelope(text: str) -> Envelope:
     try:
         envelope = msgspec.convert(plain, Envelope)
     except msgspec.ValidationError as error:
-        raise shape_error(error) from error
+        raise shape_refusal(error, choices_at=_choices) from error
+    _require_time(envelope)
     _require_version_fields(envelope)
     return envelope
-
-
-def shape_error(error: msgspec.ValidationError) -> InputError:
-    """Return the refusal that says in which field the shape does not fit, and what was expected."""
-    said, _, path = str(error).partition(" - at `$")
-    field = path.rstrip("`").lstrip(".")
-    if not field and "field `" in said:
-        field = said.split("field `", 1)[1].split("`", 1)[0]
-    return InputError(f"{field or 'the entry'}: {_in_words(said)}; mend this field and send it again", field=field)
-
-
-# What the patterns of the types ask for, in words.
-_FORMS = (
-    (r"[0-9a-f]{8}-", "a UUID in lower case is expected"),
-    (r"T[0-9]{2}:[0-9]{2}:[0-9]{2}Z", "a time in UTC is expected, such as 2026-10-03T09:30:00Z"),
-    (r"T[0-9]{2}:[0-9]{2}(", "a time with its zone is expected, such as 2026-10-03T09:30+02:00"),
-    (r"^[0-9a-f]{64}$", "64 hexadecimal digits are expected"),
-    (r"[01][0-9]|2[0-3]", "a time of day is expected, such as 09:30"),
-    (r"(\.[0-9]", "a decimal number as text is expected, such as 72.5"),
-)
-
-
-def _in_words(said: str) -> str:
-    """Return what the decoder said, with patterns put into words."""
-    if "matching regex" not in said:
-        return said
-    pattern = said.split("matching regex", 1)[1].replace("\\\\", "\\")
-    return next((words for part, words in _FORMS if part in pattern), "not in the expected form")
 
 
 def _plain(text: str) -> dict[str, Any]:
@@ -116,6 +98,19 @@ def _require_canonical(plain: dict[str, Any], text: str) -> None:
             "compose it again",
             field="text",
         )
+
+
+def _choices(field: str) -> tuple[str, ...]:
+    return get_args(Kind) if field == "kind" else ()
+
+
+def _require_time(envelope: Envelope) -> None:
+    try:
+        datetime.fromisoformat(envelope.made_at)
+    except ValueError as error:
+        raise InputError(
+            f"made_at: {envelope.made_at} is no time of the calendar; write it as 2026-10-03T09:30:00Z", field="made_at"
+        ) from error
 
 
 def _require_version_fields(envelope: Envelope) -> None:

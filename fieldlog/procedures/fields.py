@@ -8,17 +8,22 @@ from typing import Annotated, Literal
 import msgspec
 from msgspec import Meta
 
-from fieldlog.procedures.envelope import Sha256, Uid
+from fieldlog.procedures.envelope import LINE, Sha256, Uid, Words
 from fieldlog.procedures.procedure import Body
-from fieldlog.units import Diameter, Length, Pressure
+from fieldlog.units import DecimalText, Diameter, Length, Pressure
 
-Line = Annotated[str, Meta(min_length=1, max_length=200)]
-Words = Annotated[str, Meta(min_length=1, max_length=4000)]
+Line = Annotated[str, Meta(min_length=1, max_length=200, pattern=LINE)]
 Day = date
 ZonedTime = Annotated[
-    str, Meta(pattern=r"^[0-9]{4}-[0-9]{2}-[0-9]{2}T[0-9]{2}:[0-9]{2}(:[0-9]{2})?(Z|[+-][0-9]{2}:[0-9]{2})$")
+    str,
+    Meta(
+        pattern=r"^[0-9]{4}-[0-9]{2}-[0-9]{2}T[0-9]{2}:[0-9]{2}(:[0-9]{2})?(Z|[+-][0-9]{2}:[0-9]{2})(?!\n)$",
+        extra={"is_moment": True},
+    ),
 ]
-ClockTime = Annotated[str, Meta(pattern=r"^([01][0-9]|2[0-3]):[0-5][0-9]$")]
+ClockTime = Annotated[str, Meta(pattern=r"^([01][0-9]|2[0-3]):[0-5][0-9](?!\n)$")]
+NOT_NEGATIVE = {"least": "0"}
+ABOVE_ZERO = {"above": "0"}
 PumpState = Literal["none", "off", "jockey", "running"]
 ValveState = Literal["open", "partly", "shut"]
 
@@ -27,10 +32,8 @@ class PressureReading(Pressure, frozen=True, kw_only=True):
     """A pressure as read: which gauge, and the extremes of a swinging needle."""
 
     gauge: Annotated[Uid, Meta(title="Gauge")] | None = None
-    low: Annotated[str, Meta(title="Low of the swing", pattern=r"^-?(0|[1-9][0-9]{0,8})(\.[0-9]{1,9})?$")] | None = None
-    high: Annotated[str, Meta(title="High of the swing", pattern=r"^-?(0|[1-9][0-9]{0,8})(\.[0-9]{1,9})?$")] | None = (
-        None
-    )
+    low: Annotated[DecimalText, Meta(title="Low of the swing")] | None = None
+    high: Annotated[DecimalText, Meta(title="High of the swing")] | None = None
     pump_state: Annotated[PumpState, Meta(title="Pump at this reading")] | None = None
 
 
@@ -94,7 +97,7 @@ class Kept(Body, frozen=True, kw_only=True):
 class PipeRun(Body, frozen=True, kw_only=True):
     """A run of pipe with its fittings."""
 
-    length: Annotated[Length, Meta(title="Length")]
+    length: Annotated[Length, Meta(title="Length", extra=NOT_NEGATIVE)]
     inside_diameter: Annotated[Diameter, Meta(title="Inside diameter")]
     c: Annotated[int, Meta(title="C-factor", ge=20, le=160)]
     nominal: (

@@ -14,11 +14,11 @@ from fieldlog.procedures.any_test import (
     missing,
 )
 from fieldlog.procedures.envelope import Uid
-from fieldlog.procedures.fields import Line, PressureReading
+from fieldlog.procedures.fields import NOT_NEGATIVE, Line, PressureReading
 from fieldlog.procedures.procedure import Body, Problem, Procedure
 from fieldlog.units import Diameter, Flow, Length, Pressure
 
-Share = Annotated[str, Meta(pattern=r"^(0\.[0-9]{1,4}|1(\.0{1,4})?)$")]
+Share = Annotated[str, Meta(pattern=r"^(0\.(?!0+$)[0-9]{1,4}|1(\.0{1,4})?)(?!\n)$")]
 
 
 class Outlet(Body, frozen=True, kw_only=True):
@@ -27,7 +27,7 @@ class Outlet(Body, frozen=True, kw_only=True):
     size: Annotated[Diameter, Meta(title="Outlet diameter")]
     coefficient: Annotated[Share, Meta(title="Coefficient")]
     factor: Annotated[Share, Meta(title="Factor of a pumper outlet")] | None = None
-    pitot: Annotated[Pressure, Meta(title="Pitot")]
+    pitot: Annotated[Pressure, Meta(title="Pitot", extra=NOT_NEGATIVE)]
     name: Annotated[Line, Meta(title="Outlet")] | None = None
 
 

@@ -27,7 +27,8 @@ class GaugeComparison(AnyTest, frozen=True, kw_only=True):
     gauge: Annotated[Uid, Meta(title="Gauge")]
     reference: Annotated[Uid, Meta(title="Reference gauge")] | None = None
     reference_accuracy: (
-        Annotated[str, Meta(title="Reference accuracy, percent of range", pattern=r"^[0-9](\.[0-9]{1,3})?$")] | None
+        Annotated[str, Meta(title="Reference accuracy, percent of range", pattern=r"^[0-9](\.[0-9]{1,3})?(?!\n)$")]
+        | None
     ) = None
     certificate: Annotated[Line, Meta(title="Reference certificate")] | None = None
     certificate_on: Annotated[Day, Meta(title="Certificate of")] | None = None

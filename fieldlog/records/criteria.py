@@ -12,7 +12,7 @@ import msgspec
 from fieldlog.units import DecimalText, Flow, Pressure, Temperature
 
 Positive = Annotated[int, msgspec.Meta(ge=1)]
-Percent = Annotated[str, msgspec.Meta(pattern=r"^(0|[1-9][0-9]{0,3})(\.[0-9]{1,6})?$", title="percent as text")]
+Percent = Annotated[str, msgspec.Meta(pattern=r"^(0|[1-9][0-9]{0,3})(\.[0-9]{1,6})?(?!\n)$", title="percent as text")]
 AtLeastOrMore = Literal[">=", ">"]
 AtMostOrLess = Literal["<=", "<"]
 Reference = Literal["acceptance", "previous", "best"]

@@ -28,7 +28,7 @@ from fieldlog.units import DecimalText
 
 Basis = Literal["read", "from memory"]
 Mark = Literal["read", "from memory", "approved"]
-RuleId = Annotated[str, msgspec.Meta(pattern=r"^[a-z][a-z0-9_]*(\.[a-z0-9_]+)*$")]
+RuleId = Annotated[str, msgspec.Meta(pattern=r"^[a-z][a-z0-9_]*(\.[a-z0-9_]+)*(?!\n)$")]
 Words = Annotated[str, msgspec.Meta(min_length=1, max_length=2000)]
 Month = Annotated[int, msgspec.Meta(ge=1, le=12)]
 SystemType = Literal["wet", "dry", "preaction", "deluge", "standpipe"]
@@ -208,7 +208,7 @@ class ProfileValues(_Part, frozen=True, kw_only=True):
     standard: Words
     edition: Words
     catalogue_id: Words
-    catalogue_sha256: Annotated[str, msgspec.Meta(pattern=r"^[0-9a-f]{64}$")]
+    catalogue_sha256: Annotated[str, msgspec.Meta(pattern=r"^[0-9a-f]{64}(?!\n)$")]
     approved_by: Words
     approved_on: date
     in_force_from: date

@@ -131,9 +131,7 @@ def test_each_edition_has_its_own_sum() -> None:
 def test_a_clause_names_its_standard_and_edition() -> None:
     for name in catalogues():
         for rule in load(name).rules:
-            assert rule.clause is None or rule.clause.startswith(("NFPA ", "IFC (", "CEA 4001 (", "29 CFR ")), (
-                rule.id
-            )
+            assert rule.clause is None or rule.clause.startswith(("NFPA ", "IFC (", "CEA 4001 (", "29 CFR ")), rule.id
 
 
 @pytest.mark.parametrize("edition", EDITIONS)

@@ -23,9 +23,7 @@ ONE_OF_EACH: list[c.Criterion] = [
     c.AbsolutePoints(at="gauge C", of="stated points", points=(POINT,)),
     c.AbsoluteRange(quantity="air", low=Pressure(value="7", unit="psi"), high=Pressure(value="11", unit="psi")),
     c.TemperatureRange(quantity="valve room", low=Temperature(value="4.4", unit="C")),
-    c.ScheduleRange(
-        schedule=(c.GaugeRange(gauge="B2", low=POINT.pressure, cut_in=Pressure(value="3", unit="bar")),)
-    ),
+    c.ScheduleRange(schedule=(c.GaugeRange(gauge="B2", low=POINT.pressure, cut_in=Pressure(value="3", unit="bar")),)),
     c.PressureAbove(quantity="air", above="trip", by=Pressure(value="20", unit="psi")),
     c.TimeLimit(quantity="alarm_device", limit_s=90),
     c.RelativeTimeIncrease(quantity="delivery", percent="50", comparison=">=", against=("acceptance",)),

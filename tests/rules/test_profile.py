@@ -37,9 +37,7 @@ def change(rule: str, field: str, value: Any) -> Override:
     return Override(rule=rule, field=field, value=value, reason="the authority having jurisdiction says so")
 
 
-def profile_of(
-    *rows: str, overrides: tuple[Override, ...] = (), catalogue: str = "us_inspection_2017"
-) -> RuleProfile:
+def profile_of(*rows: str, overrides: tuple[Override, ...] = (), catalogue: str = "us_inspection_2017") -> RuleProfile:
     values = resolve(load(catalogue), adoption(*rows), overrides)
     body = msgspec.json.decode(canonical_text(msgspec.to_builtins(values)), type=RuleProfileBody)
     check_rule_profile(body)
@@ -161,9 +159,7 @@ def test_a_margin_of_two_parts_says_which_counts(which_wins: str, margin_psi: fl
 def test_a_margin_in_bar_is_read_in_psi() -> None:
     overrides = (change("margin", "criteria.0.absolute", {"value": "0.5", "unit": "bar"}),)
     # 0.5 bar = 50 kPa; 6.894757 kPa a psi (NIST SP 811).
-    assert profile_of("margin", overrides=overrides).margin_psi(38.0, 160.0) == pytest.approx(
-        50 / 6.894757, rel=1e-6
-    )
+    assert profile_of("margin", overrides=overrides).margin_psi(38.0, 160.0) == pytest.approx(50 / 6.894757, rel=1e-6)
 
 
 def test_a_margin_of_an_unknown_pressure_is_unknown_and_not_small() -> None:

@@ -45,9 +45,7 @@ def drain_test(number: int, **fields: Any) -> Made:
         "performed_on": f"2023-{2 + number % 11:02}-17",
         "residual": {"value": f"{43 + number}", "unit": "psi"},
     }
-    return entry(
-        "main_drain_test", uid(number), body, **{"site": SITE, "system": SYSTEM, "visit": VISIT, **fields}
-    )
+    return entry("main_drain_test", uid(number), body, **{"site": SITE, "system": SYSTEM, "visit": VISIT, **fields})
 
 
 def version(of: Made, number: int, based_on: str, says: str = "read again", **fields: Any) -> Made:

@@ -46,9 +46,7 @@ def test_a_backup_can_be_read_where_nothing_can_be_written(filled: Connection, p
         target.parent.chmod(0o700)
 
 
-def test_restored_it_is_the_same_log_and_goes_on(
-    filled: Connection, path: Path, target: Path, tmp_path: Path
-) -> None:
+def test_restored_it_is_the_same_log_and_goes_on(filled: Connection, path: Path, target: Path, tmp_path: Path) -> None:
     before = made.dump(filled)
     backup.back_up(path, target)
     restored = tmp_path / "restored.sqlite"

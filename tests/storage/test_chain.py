@@ -139,9 +139,7 @@ def a_text_that_is_no_text(connection: Connection, rng: random.Random, number: i
 
 def a_text_and_its_hash(connection: Connection, rng: random.Random, number: int) -> tuple[int, str]:
     (text,) = connection.execute("select text || ' ' from entries where number = ?", (number,)).fetchone()
-    connection.execute(
-        "update entries set text = ?, sha256 = ? where number = ?", (text, sha256_hex(text), number)
-    )
+    connection.execute("update entries set text = ?, sha256 = ? where number = ?", (text, sha256_hex(text), number))
     return number, "link"
 
 
@@ -184,9 +182,7 @@ def a_number(connection: Connection, rng: random.Random, number: int) -> tuple[i
 
 def two_texts(connection: Connection, rng: random.Random, number: int) -> tuple[int, str]:
     other = number - 1 if number > 1 else number + 1
-    rows = connection.execute(
-        "select number, text from entries where number in (?, ?)", (number, other)
-    ).fetchall()
+    rows = connection.execute("select number, text from entries where number in (?, ?)", (number, other)).fetchall()
     (first, one), (second, two) = sorted(rows)
     connection.execute("update entries set text = ? where number = ?", (two, first))
     connection.execute("update entries set text = ? where number = ?", (one, second))

@@ -86,9 +86,7 @@ def test_settings_with_an_affected_sqlite(path: Path, monkeypatch: pytest.Monkey
     connection.close()
 
 
-def test_an_affected_sqlite_refuses_a_file_with_a_write_ahead_log(
-    path: Path, monkeypatch: pytest.MonkeyPatch
-) -> None:
+def test_an_affected_sqlite_refuses_a_file_with_a_write_ahead_log(path: Path, monkeypatch: pytest.MonkeyPatch) -> None:
     monkeypatch.setattr(module, "LIBRARY_VERSION", (3, 51, 3))
     open_database(path, create=True).close()
     monkeypatch.setattr(module, "LIBRARY_VERSION", (3, 51, 2))

@@ -49,9 +49,7 @@ def test_outside_a_transaction_nothing_is_deleted(connection: Connection) -> Non
 
 # A step makes a version of one of three subjects, based on any version there is of it, perhaps withdrawing it,
 # perhaps on a tablet.
-steps = st.lists(
-    st.tuples(st.integers(0, 2), st.integers(0, 9), st.booleans(), st.booleans()), min_size=2, max_size=14
-)
+steps = st.lists(st.tuples(st.integers(0, 2), st.integers(0, 9), st.booleans(), st.booleans()), min_size=2, max_size=14)
 Step = tuple[int, int, bool, bool]
 
 

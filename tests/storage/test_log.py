@@ -284,9 +284,7 @@ def test_a_version_waits_for_its_subject_and_for_what_it_is_based_on(connection:
 
 def test_a_batch_in_the_wrong_order_is_taken_in_whole(empty: Connection) -> None:
     made = drain_test(31)
-    result = take(
-        empty, version(made, 42, uid(41)), version(made, 41, uid(31)), made, *reversed(register())
-    ).result
+    result = take(empty, version(made, 42, uid(41)), version(made, 41, uid(31)), made, *reversed(register())).result
     assert len(result.receipts) == 10
     assert (result.refused, result.waiting, result.repeated) == ((), (), ())
     assert in_force(empty, uid(31)) == uid(42)

@@ -10,9 +10,7 @@ from fieldlog.storage.connection import Connection
 from fieldlog.storage.refusals import RefusedText, refused_text
 from tests.storage.made import AT, LATER, ORGANISATION, SITE, drain_test, uid
 
-READING = Refusal(
-    uid(31), "input", "body.residual", "body.residual: 540 psi is above the gauge's range; read it again"
-)
+READING = Refusal(uid(31), "input", "body.residual", "body.residual: 540 psi is above the gauge's range; read it again")
 
 
 @pytest.mark.parametrize(

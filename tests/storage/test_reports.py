@@ -31,9 +31,7 @@ def test_reports_are_found_by_digest_and_by_visit(signed: Connection) -> None:
     assert reports.every(signed) == [SECOND, FIRST]
 
 
-@pytest.mark.parametrize(
-    "again", [FIRST, StoredReport("e5" * 32, VISIT, NEXT_SIGN_OFF, 1, LATER, "f6" * 32, 51_000)]
-)
+@pytest.mark.parametrize("again", [FIRST, StoredReport("e5" * 32, VISIT, NEXT_SIGN_OFF, 1, LATER, "f6" * 32, 51_000)])
 def test_a_revision_is_made_once(signed: Connection, again: StoredReport) -> None:
     reports.add(signed, FIRST)
     with pytest.raises(ConflictError, match="revision 1"):

@@ -63,9 +63,7 @@ def test_a_migration_that_fails_leaves_nothing_behind(path: Path, monkeypatch: p
 def test_two_processes_that_open_a_new_database_at_once(path: Path) -> None:
     command = [sys.executable, "-c", OPEN_TOGETHER, str(path)]
     pipe = subprocess.PIPE
-    children = [
-        subprocess.Popen(command, cwd=ROOT, stdin=pipe, stdout=pipe, stderr=pipe, text=True) for _ in range(2)
-    ]
+    children = [subprocess.Popen(command, cwd=ROOT, stdin=pipe, stdout=pipe, stderr=pipe, text=True) for _ in range(2)]
     for child in children:
         assert child.stdout is not None
         assert child.stdout.readline() == "ready\n"

@@ -15,16 +15,12 @@ OTHER_SUPPLY, OTHER_SYSTEM, PROFILE = uid(71), uid(72), uid(73)
 TODAY = date(2024, 5, 8)
 
 
-def said(
-    system: str, says: Statement, *, until: date | None = None, profile: str | None = PROFILE
-) -> SystemStatement:
+def said(system: str, says: Statement, *, until: date | None = None, profile: str | None = PROFILE) -> SystemStatement:
     return SystemStatement(
         system=system,
         profile=profile,
         statement=says,
-        reasons=(
-            Reason("ten_percent", {"reduction": 0.125, "against": "acceptance", "flagged": True}, (31, 8), "3"),
-        ),
+        reasons=(Reason("ten_percent", {"reduction": 0.125, "against": "acceptance", "flagged": True}, (31, 8), "3"),),
         next=("open_the_valve", "ask_the_waterworks"),
         ten_percent=(TenPercent("previous", 0.0625, None, 31, sigma=0.015625),),
         through_number=9,
@@ -64,9 +60,7 @@ def test_the_most_worrying_comes_first(two: Connection) -> None:
 
 
 def test_what_is_put_takes_the_place_of_all_that_was(two: Connection) -> None:
-    put(
-        two, SUPPLY, SITE, 9, said(SYSTEM, Statement.HOLDING), said(OTHER_SYSTEM, Statement.UNPROVEN, profile=None)
-    )
+    put(two, SUPPLY, SITE, 9, said(SYSTEM, Statement.HOLDING), said(OTHER_SYSTEM, Statement.UNPROVEN, profile=None))
     again = said(SYSTEM, Statement.CHANGED)
     put(two, SUPPLY, SITE, 12, again)
     assert statements.every(two) == [again]
@@ -110,9 +104,7 @@ def test_the_supplies_of_a_site_and_all_of_them(two: Connection) -> None:
 
 
 @pytest.mark.parametrize(("until", "is_due"), [(date(2024, 5, 7), True), (TODAY, True), (date(2024, 5, 9), False)])
-def test_time_alone_makes_a_supply_due_from_the_earliest_day_on(
-    two: Connection, until: date, *, is_due: bool
-) -> None:
+def test_time_alone_makes_a_supply_due_from_the_earliest_day_on(two: Connection, until: date, *, is_due: bool) -> None:
     put(two, OTHER_SUPPLY, OTHER_SITE, 8, said(OTHER_SYSTEM, Statement.HOLDING))
     put(
         two,
