@@ -21,6 +21,7 @@ import tempfile
 import time
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass
+from datetime import UTC, datetime
 from itertools import count
 from pathlib import Path
 from typing import Any
@@ -28,7 +29,13 @@ from uuid import UUID
 
 sys.path.insert(0, str(Path(__file__).resolve().parents[2]))
 
+from fieldlog.demo import story
+from fieldlog.demo.pen import uid_of
 from fieldlog.procedures.envelope import parse_envelope
+from fieldlog.procedures.read import parse
+from fieldlog.services import judging
+from fieldlog.services.instance import create_instance
+from fieldlog.settings import Settings
 from fieldlog.storage import chain, log
 from fieldlog.storage.connection import LIBRARY_VERSION, Connection, journal_for, sqlite3, transaction
 from fieldlog.storage.schema import open_database
@@ -150,6 +157,7 @@ def compared(folder: Path, load: Load, batch: int, rounds: int) -> dict[str, flo
 # What is done to each text beside storing it. A line is a name and a function of the texts.
 LINES: dict[str, Callable[[Sequence[str]], object]] = {
     "parse and check the envelope": lambda texts: [parse_envelope(text) for text in texts],
+    "parse and check all of it": lambda texts: [parse(text) for text in texts],
 }
 
 
@@ -164,6 +172,26 @@ def lines(load: Load, rounds: int) -> dict[str, float]:
             seconds.append(time.perf_counter() - began)
         found[name] = len(texts) / min(seconds)
     return found
+
+
+def judging_ms(folder: Path, rounds: int) -> dict[str, float]:
+    """Return what judging costs after intake: a supply with three systems and ten years of tests, in ms."""
+    made = create_instance(Settings(folder / "demo"))
+    at = datetime(2026, 12, 1, 12, tzinfo=UTC)
+    story.enter_history(made, at, lambda _: None)
+    site = uid_of("harbour")
+    (history,) = judging.site_histories(made.connection, site)
+    ways: dict[str, Callable[[], object]] = {
+        "read the entries of one supply": lambda: judging.site_histories(made.connection, site),
+        "judge its three systems": lambda: judging.statements_on(history, at.date()),
+    }
+    return {name: 1000 * min(timed_call(way) for _ in range(3 * rounds)) for name, way in ways.items()}
+
+
+def timed_call(call: Callable[[], object]) -> float:
+    began = time.perf_counter()
+    call()
+    return time.perf_counter() - began
 
 
 def measured(entries: int, rounds: int) -> dict[str, Any]:
@@ -186,6 +214,7 @@ def measured(entries: int, rounds: int) -> dict[str, Any]:
             },
             "bar": BAR,
             "lines_per_second": lines(load, rounds),
+            "judging_ms": judging_ms(folder, rounds),
         }
 
 
@@ -202,6 +231,7 @@ def told(result: dict[str, Any]) -> str:
             f"{result['ratio_to_raw_entries'][batch]:>16.2f}"
         )
     said += [f"  {name:<30}{rate:>9,.0f}" for name, rate in result["lines_per_second"].items()]
+    said += [f"  {name:<30}{spent:>9.1f} ms" for name, spent in result["judging_ms"].items()]
     worst = min(result["ratio_to_raw"].values())
     said.append(f"the bar is {BAR} of raw; reached {worst:.2f}")
     return "\n".join(said)
