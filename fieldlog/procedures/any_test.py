@@ -6,18 +6,8 @@ from typing import Annotated, Literal
 
 from msgspec import Meta
 
-from fieldlog.procedures.fields import (
-    ClockTime,
-    Day,
-    Instrument,
-    Kept,
-    Line,
-    Photo,
-    PumpState,
-    Restoration,
-    ValveFound,
-    Words,
-)
+from fieldlog.procedures.envelope import Words
+from fieldlog.procedures.fields import ClockTime, Day, Instrument, Kept, Line, Photo, PumpState, Restoration, ValveFound
 from fieldlog.procedures.procedure import Body, Caution, Problem
 from fieldlog.units import Length, Temperature
 

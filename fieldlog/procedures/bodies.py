@@ -2,17 +2,19 @@
 
 from __future__ import annotations
 
-import types
+import dataclasses
+import re
 from collections.abc import Mapping
 from dataclasses import dataclass
-from typing import Annotated, Any, Literal, Union, get_args, get_origin, get_type_hints
+from typing import Any, Literal, get_args, get_origin, get_type_hints
 
 import msgspec
 
 from fieldlog.errors import InputError
 from fieldlog.procedures.catalogue import PROCEDURES
-from fieldlog.procedures.envelope import shape_error
+from fieldlog.procedures.limits import limit_problems, limits_of, metas_of
 from fieldlog.procedures.procedure import Problem
+from fieldlog.procedures.shape_words import shape_refusal
 
 
 @dataclass(frozen=True, slots=True)
@@ -25,6 +27,7 @@ class Field:
     type: Any
     is_required: bool
     choices: tuple[str, ...] = ()
+    limits: Mapping[str, str] = dataclasses.field(default_factory=dict)  # least, above, most, shortest, longest
 
 
 def decode_body(kind: str, body: Mapping[str, Any]) -> msgspec.Struct:
@@ -40,9 +43,8 @@ def decode_body(kind: str, body: Mapping[str, Any]) -> msgspec.Struct:
     try:
         typed = msgspec.convert(body, procedure.body)
     except msgspec.ValidationError as error:
-        refused = shape_error(error)
-        raise InputError(f"body.{refused.message}", field=_inside(refused.field)) from error
-    problems = procedure.check(typed)
+        raise shape_refusal(error, "body", lambda path: _choices_at(procedure.body, path)) from error
+    problems = limit_problems(typed) + procedure.check(typed)
     if problems:
         raise _refusal(problems)
     return typed
@@ -65,10 +67,6 @@ def json_schema(kind: str) -> dict[str, Any]:
     return msgspec.json.schema(PROCEDURES[kind].body)
 
 
-def _inside(field: str) -> str:
-    return f"body.{field}" if field else "body"
-
-
 def _refusal(problems: list[Problem]) -> InputError:
     first = problems[0]
     said = "; ".join(f"{problem.field}: {problem.message}" for problem in problems)
@@ -76,23 +74,25 @@ def _refusal(problems: list[Problem]) -> InputError:
 
 
 def _field(info: msgspec.structs.FieldInfo, hint: Any) -> Field:  # noqa: ANN401  a type annotation of any shape
-    metas, bare = _metas(hint)
+    metas, bare = metas_of(hint)
     title = next((meta.title for meta in metas if meta.title), info.name.replace("_", " "))
     described = next((meta.description for meta in metas if meta.description), "")
-    return Field(info.name, title, described, bare, info.required, _choices(bare))
-
-
-def _metas(hint: Any) -> tuple[list[msgspec.Meta], Any]:  # noqa: ANN401
-    if get_origin(hint) is Annotated:
-        inner, *found = get_args(hint)
-        deeper, bare = _metas(inner)
-        return [meta for meta in found if isinstance(meta, msgspec.Meta)] + deeper, bare
-    if get_origin(hint) in {Union, types.UnionType}:
-        options = [option for option in get_args(hint) if option is not type(None)]
-        if len(options) == 1:
-            return _metas(options[0])
-    return [], hint
+    return Field(info.name, title, described, bare, info.required, _choices(bare), limits_of(metas, bare))
 
 
 def _choices(bare: Any) -> tuple[str, ...]:  # noqa: ANN401
     return get_args(bare) if get_origin(bare) is Literal else ()
+
+
+def _choices_at(body_type: type[msgspec.Struct], path: str) -> tuple[str, ...]:
+    """Return what may be chosen at a dotted path of a body; nothing where the path leads to no choice."""
+    bare: Any = body_type
+    for name in re.sub(r"\[[^\]]*\]", "", path).split("."):
+        if not (isinstance(bare, type) and issubclass(bare, msgspec.Struct)):
+            return ()
+        hints = get_type_hints(bare, include_extras=True)
+        found = {info.encode_name: hints[info.name] for info in msgspec.structs.fields(bare)}
+        _, bare = metas_of(found.get(name))
+        if get_origin(bare) is tuple:
+            _, bare = metas_of(get_args(bare)[0])
+    return tuple(str(choice) for choice in _choices(bare))

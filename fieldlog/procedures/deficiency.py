@@ -7,8 +7,8 @@ from typing import Annotated, Literal
 from msgspec import Meta
 
 from fieldlog.procedures.any_test import WHILE_IMPAIRED
-from fieldlog.procedures.envelope import Uid
-from fieldlog.procedures.fields import Day, Line, Photo, Words, ZonedTime
+from fieldlog.procedures.envelope import Uid, Words
+from fieldlog.procedures.fields import Day, Line, Photo, ZonedTime
 from fieldlog.procedures.procedure import Body, Problem, Procedure
 
 

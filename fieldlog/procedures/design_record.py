@@ -6,7 +6,8 @@ from typing import Annotated, Literal
 
 from msgspec import Meta
 
-from fieldlog.procedures.fields import Day, Line, Words
+from fieldlog.procedures.envelope import Words
+from fieldlog.procedures.fields import NOT_NEGATIVE, Day, Line
 from fieldlog.procedures.procedure import Body, Problem, Procedure
 from fieldlog.units import Area, Density, Flow, Length, Pressure
 
@@ -15,7 +16,7 @@ class Demand(Body, frozen=True, kw_only=True):
     """Flow and pressure required at the base of riser."""
 
     flow: Annotated[Flow, Meta(title="Demand flow")]
-    pressure: Annotated[Pressure, Meta(title="Required pressure")]
+    pressure: Annotated[Pressure, Meta(title="Required pressure", extra=NOT_NEGATIVE)]
 
 
 class DesignSupply(Body, frozen=True, kw_only=True):

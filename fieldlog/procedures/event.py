@@ -6,8 +6,8 @@ from typing import Annotated, Literal
 
 from msgspec import Meta
 
-from fieldlog.procedures.envelope import Sha256, Uid
-from fieldlog.procedures.fields import Line, Words
+from fieldlog.procedures.envelope import Sha256, Uid, Words
+from fieldlog.procedures.fields import Line
 from fieldlog.procedures.procedure import Body, Procedure
 
 

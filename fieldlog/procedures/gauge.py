@@ -7,7 +7,7 @@ from typing import Annotated, Literal
 from msgspec import Meta
 
 from fieldlog.procedures.envelope import Uid
-from fieldlog.procedures.fields import Day, Line
+from fieldlog.procedures.fields import ABOVE_ZERO, Day, Line
 from fieldlog.procedures.procedure import Body, Problem, Procedure
 from fieldlog.units import Length, Pressure
 
@@ -23,8 +23,8 @@ class Gauge(Body, frozen=True, kw_only=True):
     behind: Annotated[
         tuple[Literal["check", "alarm", "backflow", "prv"], ...], Meta(title="Valves between source and gauge")
     ] = ()
-    range: Annotated[Pressure, Meta(title="Range, full scale")] | None = None
-    division: Annotated[Pressure, Meta(title="Smallest division")] | None = None
+    range: Annotated[Pressure, Meta(title="Range, full scale", extra=ABOVE_ZERO)] | None = None
+    division: Annotated[Pressure, Meta(title="Smallest division", extra=ABOVE_ZERO)] | None = None
     grade: Annotated[Literal["4A", "3A", "2A", "1A", "A", "B", "C", "D"], Meta(title="Accuracy grade")] | None = None
     elevation: Annotated[Length, Meta(title="Elevation")] | None = None
     installed_on: Annotated[Day, Meta(title="Installed on")] | None = None

@@ -7,7 +7,7 @@ from typing import Annotated
 from msgspec import Meta
 
 from fieldlog.procedures.any_test import AnyTest, common_problems, missing
-from fieldlog.procedures.fields import Line, PressureReading
+from fieldlog.procedures.fields import ABOVE_ZERO, Line, PressureReading
 from fieldlog.procedures.procedure import Body, Problem, Procedure
 from fieldlog.units import Pressure, Temperature
 
@@ -18,7 +18,7 @@ class OneReading(Body, frozen=True, kw_only=True):
     pressure: Annotated[PressureReading, Meta(title="Pressure")]
     cock_open: Annotated[bool, Meta(title="Isolating cock open")] | None = None
     returns_to_zero: Annotated[bool, Meta(title="Returns to zero when vented")] | None = None
-    relief_setting: Annotated[Pressure, Meta(title="Relief valve setting")] | None = None
+    relief_setting: Annotated[Pressure, Meta(title="Relief valve setting", extra=ABOVE_ZERO)] | None = None
     good_condition: Annotated[bool, Meta(title="In good condition")] | None = None
     note: Annotated[Line, Meta(title="Note")] | None = None
 

@@ -14,7 +14,7 @@ from fieldlog.procedures.any_test import (
     missing,
 )
 from fieldlog.procedures.envelope import Uid
-from fieldlog.procedures.fields import Duration, Line, PressureReading
+from fieldlog.procedures.fields import NOT_NEGATIVE, Duration, Line, PressureReading
 from fieldlog.procedures.procedure import Problem, Procedure
 from fieldlog.units import Pressure
 
@@ -52,7 +52,7 @@ class MainDrainTest(AnyTest, frozen=True, kw_only=True):
     clear_after: Annotated[Duration, Meta(title="Ran clear after")] | None = None
     drain_unchanged: Annotated[bool, Meta(title="Drain unchanged since last test")] | None = None
     confirmed: Annotated[Literal["no", "second look", "second gauge"], Meta(title="Reading confirmed by")] = "no"
-    drain_pitot: Annotated[Pressure, Meta(title="Pitot reading at the drain outlet")] | None = None
+    drain_pitot: Annotated[Pressure, Meta(title="Pitot reading at the drain outlet", extra=NOT_NEGATIVE)] | None = None
     conditions: Annotated[Line, Meta(title="Conditions", description="other large use of water seen")] | None = None
 
 

@@ -6,7 +6,8 @@ from typing import Annotated
 
 from msgspec import Meta
 
-from fieldlog.procedures.fields import Photo, Words
+from fieldlog.procedures.envelope import Words
+from fieldlog.procedures.fields import Photo
 from fieldlog.procedures.procedure import Body, Procedure
 
 

@@ -6,7 +6,8 @@ from typing import Annotated
 
 from msgspec import Meta
 
-from fieldlog.procedures.fields import Day, Line, Words
+from fieldlog.procedures.envelope import Words
+from fieldlog.procedures.fields import Day, Line
 from fieldlog.procedures.procedure import Body, Procedure
 
 

@@ -6,8 +6,8 @@ from typing import Annotated, Literal
 
 from msgspec import Meta
 
-from fieldlog.procedures.envelope import Uid
-from fieldlog.procedures.fields import Day, Line, Photo, Words
+from fieldlog.procedures.envelope import Uid, Words
+from fieldlog.procedures.fields import Day, Line, Photo
 from fieldlog.procedures.procedure import Body, Procedure
 
 

@@ -7,7 +7,8 @@ from zoneinfo import ZoneInfo, ZoneInfoNotFoundError
 
 from msgspec import Meta
 
-from fieldlog.procedures.fields import Line, Words
+from fieldlog.procedures.envelope import Words
+from fieldlog.procedures.fields import Line
 from fieldlog.procedures.procedure import Body, Problem, Procedure
 from fieldlog.units import SiteUnits
 

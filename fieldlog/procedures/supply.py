@@ -6,7 +6,7 @@ from typing import Annotated, Literal
 
 from msgspec import Meta
 
-from fieldlog.procedures.fields import Line, PumpState
+from fieldlog.procedures.fields import NOT_NEGATIVE, Line, PumpState
 from fieldlog.procedures.procedure import Body, Problem, Procedure
 from fieldlog.units import Flow, Length, Pressure
 
@@ -18,7 +18,7 @@ class SupplyPoint(Body, frozen=True, kw_only=True):
 
     pump_state: Annotated[PumpState, Meta(title="Fire pump")] = "running"
     flow: Annotated[Flow, Meta(title="Flow")]
-    pressure: Annotated[Pressure, Meta(title="Pressure")]
+    pressure: Annotated[Pressure, Meta(title="Pressure", extra=NOT_NEGATIVE)]
 
 
 class Supply(Body, frozen=True, kw_only=True):
@@ -31,8 +31,10 @@ class Supply(Body, frozen=True, kw_only=True):
     ]
     backflow_preventer: Annotated[InFeed, Meta(title="Backflow preventer")] = "none"
     pressure_reducing_valve: Annotated[InFeed, Meta(title="Pressure-reducing valve")] = "none"
-    prv_static: Annotated[Pressure, Meta(title="Reducing valve set point, static")] | None = None
-    prv_residual: Annotated[Pressure, Meta(title="Reducing valve set point, residual")] | None = None
+    prv_static: Annotated[Pressure, Meta(title="Reducing valve set point, static", extra=NOT_NEGATIVE)] | None = None
+    prv_residual: Annotated[Pressure, Meta(title="Reducing valve set point, residual", extra=NOT_NEGATIVE)] | None = (
+        None
+    )
     tank_level_reference: Annotated[Length, Meta(title="Tank level the record holds at")] | None = None
     points: Annotated[tuple[SupplyPoint, ...], Meta(title="Stated points")] = ()
     note: Annotated[Line, Meta(title="Note")] | None = None

@@ -7,7 +7,7 @@ from typing import Annotated, Literal
 from msgspec import Meta
 
 from fieldlog.procedures.envelope import Uid
-from fieldlog.procedures.fields import Day, Line, PipeRun, ValveState
+from fieldlog.procedures.fields import NOT_NEGATIVE, Day, Line, PipeRun, ValveState
 from fieldlog.procedures.procedure import Body, Problem, Procedure
 from fieldlog.units import Diameter, Discharge, Flow, Length, Pressure
 
@@ -19,7 +19,7 @@ class Drain(Body, frozen=True, kw_only=True):
     size: Annotated[Diameter, Meta(title="Drain size")] | None = None
     outlet: Annotated[Line, Meta(title="Outlet", description="where it discharges")] | None = None
     outlet_elevation: Annotated[Length, Meta(title="Outlet elevation")] | None = None
-    length: Annotated[Length, Meta(title="Length of drain pipe, equivalent")] | None = None
+    length: Annotated[Length, Meta(title="Length of drain pipe, equivalent", extra=NOT_NEGATIVE)] | None = None
     k: Annotated[Discharge, Meta(title="Measured K")] | None = None
 
 
@@ -27,7 +27,7 @@ class LossPoint(Body, frozen=True, kw_only=True):
     """One point of a listed loss."""
 
     flow: Annotated[Flow, Meta(title="Flow")]
-    loss: Annotated[Pressure, Meta(title="Loss")]
+    loss: Annotated[Pressure, Meta(title="Loss", extra=NOT_NEGATIVE)]
 
 
 class StatedLoss(Body, frozen=True, kw_only=True):

@@ -6,8 +6,8 @@ from typing import Annotated, Literal
 
 from msgspec import Meta
 
-from fieldlog.procedures.envelope import Uid
-from fieldlog.procedures.fields import ClockTime, Day, Line, PumpState, Restoration, Words
+from fieldlog.procedures.envelope import Uid, Words
+from fieldlog.procedures.fields import ClockTime, Day, Line, PumpState, Restoration
 from fieldlog.procedures.procedure import Body, Problem, Procedure
 
 
