@@ -72,6 +72,22 @@ def test_nine_in_ten_of_such_losses_are_found() -> None:
     assert share_found(CASES[0], loss / 3) < 0.5
 
 
+@pytest.mark.parametrize("look", CASES, ids=[f"case {n}" for n in range(1, 7)])
+def test_the_loss_is_the_rest_of_its_own_iteration(look: Look) -> None:
+    # Written out once more, with R at the outlet in the root and in D/R only: DEVELOPERS.md, Method §8.
+    loss, head = smallest_loss(look), look.outlet_residual_psi - look.residual_psi
+    assert loss is not None
+    static_var, read_var = look.static_sigma_psi**2, look.residual_sigma_psi**2
+    residual, drop = look.residual_psi, look.static_psi - look.residual_psi
+    ratio = look.drain_k * look.outlet_residual_psi**0.5 / look.demand_flow_gpm
+    d = loss * ratio**2
+    lowered = residual - d / (1 + d / residual)
+    before = static_var + read_var * (1 + 0.925 * drop / look.outlet_residual_psi) ** 2
+    now = static_var + read_var * (1 + 0.925 * (drop + residual - lowered) / (lowered + head)) ** 2
+    s = (now + before / look.tests + (0.06 * drop) ** 2 * (1 + 1 / look.tests)) ** 0.5
+    assert loss == pytest.approx(2.93 * s / ratio**2 * (1 + 0.35 * d / residual), abs=1e-4)
+
+
 def test_a_coarse_gauge_on_a_weak_supply_leaves_no_finite_loss() -> None:
     assert smallest_loss(Look(40.0, 20.0, 20.0, 2.1, 2.93, 42.0, 900.0, 1)) is None
     assert smallest_loss(Look(40.0, -2.0, -2.0, 0.4, 0.6, 42.0, 900.0, 3)) is None

@@ -43,6 +43,14 @@ def test_a_static_before_far_over_the_one_after_was_trapped() -> None:
     assert (static.psi, [str(note.code) for note in static.notes]) == (64.0, ["trapped_pressure"])
 
 
+@pytest.mark.parametrize(("after", "psi"), [("79.6", 80.3), ("79.3", 79.3)])
+def test_trapped_begins_at_twice_the_error_of_a_difference(after: str, psi: float) -> None:
+    test = drained("2023-05-02", "81", "65", after)  # 2 sqrt(2) x 0.577 = 1.63 psi
+    static = static_of(test, with_gauge(test))
+    assert static is not None
+    assert static.psi == pytest.approx(psi)
+
+
 def test_a_static_before_alone_is_less_sure_by_two_psi() -> None:
     test = drained("2023-05-02", "81", "65", None)
     static = static_of(test, with_gauge(test))

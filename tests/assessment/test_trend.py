@@ -46,6 +46,14 @@ def test_values_that_are_all_the_same_show_no_trend() -> None:
     assert theil_sen([0.0, 1.0, 2.0, 3.5, 4.0, 5.0], [66.0] * 6) == (0.0, 0.0, 0.0)
 
 
+def test_values_that_differ_by_rounding_alone_are_tied() -> None:
+    years = [float(n) for n in range(7)]
+    exact, noisy = (
+        [66.0 + n // 2 + k for n, k in enumerate(noise)] for noise in ([0.0] * 7, [0, 1e-9, 0, -1e-9, 0, 2e-9, 0])
+    )
+    assert mann_kendall(years, noisy) == mann_kendall(years, exact)
+
+
 def test_trends_come_from_six_dates_on() -> None:
     assert said(*steady_years()[:5]).trends == ()
     assert [trend.quantity for trend in said(*steady_years()[:6]).trends] == ["static_psi", "drain_index"]
