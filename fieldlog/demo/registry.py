@@ -11,13 +11,12 @@ from fieldlog.demo.pen import Pen, uid_of
 from fieldlog.demo.plan import SitePlan, SupplyPlan, SystemPlan
 from fieldlog.demo.scenario import ago
 from fieldlog.procedures.design_record import Demand, DesignRecord, DesignSupply
-from fieldlog.procedures.fields import PipeRun
 from fieldlog.procedures.gauge import Gauge
 from fieldlog.procedures.person import Person
 from fieldlog.procedures.rule_profile import RuleProfileBody
 from fieldlog.procedures.site import Site
 from fieldlog.procedures.supply import Supply, SupplyPoint
-from fieldlog.procedures.system import Drain, FeedPart, LossPoint, StatedLoss, System, SystemValve
+from fieldlog.procedures.system import Drain, FeedPart, LossPoint, System, SystemValve
 from fieldlog.rules import loader
 from fieldlog.units import Diameter, Discharge, Flow, Length, Pressure, SiteUnits
 
@@ -70,7 +69,7 @@ def _supply(plan: SupplyPlan) -> Supply:
 
 
 def _system(plan: SystemPlan, site: SitePlan) -> System:
-    pipe = PipeRun(
+    pipe = FeedPart(
         length=Length(value=str(plan.feed_ft), unit="ft"), inside_diameter=Diameter(value="6.065", unit="in"), c=120,
         nominal="6", fittings={"90 standard elbow": 2, "gate valve": 2},
     )  # fmt: skip
@@ -85,7 +84,7 @@ def _system(plan: SystemPlan, site: SitePlan) -> System:
             id="main drain", size=Diameter(value="2", unit="in"), outlet="outside wall",
             outlet_elevation=Length(value="2", unit="ft"),
         ),
-        feed=(FeedPart(pipe=pipe), FeedPart(device=StatedLoss(of="check assembly", stated_loss=losses))),
+        feed=(pipe, FeedPart(of="check assembly", stated_loss=losses)),
         hose_point="street",
         valves=_VALVES,
         alarm="pressure switch",

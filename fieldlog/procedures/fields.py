@@ -5,12 +5,11 @@ from __future__ import annotations
 from datetime import date
 from typing import Annotated, Literal
 
-import msgspec
 from msgspec import Meta
 
 from fieldlog.procedures.envelope import LINE, Sha256, Uid, Words
 from fieldlog.procedures.procedure import Body
-from fieldlog.units import DecimalText, Diameter, Length, Pressure
+from fieldlog.units import DecimalText, Pressure
 
 Line = Annotated[str, Meta(min_length=1, max_length=200, pattern=LINE)]
 Day = date
@@ -92,17 +91,3 @@ class Kept(Body, frozen=True, kw_only=True):
     field: Annotated[Line, Meta(title="Field")]
     code: Annotated[Line, Meta(title="Question")]
     shown: Annotated[Words, Meta(title="Shown")] | None = None
-
-
-class PipeRun(Body, frozen=True, kw_only=True):
-    """A run of pipe with its fittings."""
-
-    length: Annotated[Length, Meta(title="Length", extra=NOT_NEGATIVE)]
-    inside_diameter: Annotated[Diameter, Meta(title="Inside diameter")]
-    c: Annotated[int, Meta(title="C-factor", ge=20, le=160)]
-    nominal: (
-        Annotated[Line, Meta(title="Nominal size", description="decides the fittings' equivalent lengths")] | None
-    ) = None
-    fittings: Annotated[dict[str, Annotated[int, Meta(ge=1, le=99)]], Meta(title="Fittings")] = msgspec.field(
-        default_factory=dict
-    )

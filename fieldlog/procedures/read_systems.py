@@ -5,9 +5,8 @@ from __future__ import annotations
 from datetime import date
 
 from fieldlog.procedures.design_record import DesignRecord
-from fieldlog.procedures.fields import PipeRun as PipeBody
 from fieldlog.procedures.supply import Supply as SupplyBody
-from fieldlog.procedures.system import StatedLoss as LossBody
+from fieldlog.procedures.system import FeedPart
 from fieldlog.procedures.system import System as SystemBody
 from fieldlog.records.entries import Entry
 from fieldlog.records.history import Design, Drain, PipeRun, StatedLoss, Supply
@@ -51,20 +50,15 @@ def drain(body: SystemBody, restored_on: date | None) -> Drain | None:
 
 def feed(body: SystemBody) -> tuple[PipeRun | StatedLoss, ...]:
     """Return the way from the hose point to the base of riser, part by part."""
-    return tuple(
-        _pipe(part.pipe) if part.pipe is not None else _loss(part.device)
-        for part in body.feed
-        if part.pipe is not None or part.device is not None
-    )
+    return tuple(_feed_part(part) for part in body.feed)
 
 
-def _pipe(run: PipeBody) -> PipeRun:
-    return PipeRun(run.length.ft, run.inside_diameter.inches, run.c, tuple(sorted(run.fittings.items())), run.nominal)
-
-
-def _loss(device: LossBody | None) -> StatedLoss:
-    points = () if device is None else tuple((point.flow.gpm, point.loss.psi) for point in device.stated_loss)
-    return StatedLoss(tuple(sorted(points)), "" if device is None else device.of)
+def _feed_part(part: FeedPart) -> PipeRun | StatedLoss:
+    if part.length is None or part.inside_diameter is None or part.c is None:
+        points = tuple(sorted((point.flow.gpm, point.loss.psi) for point in part.stated_loss))
+        return StatedLoss(points, part.of or "")
+    fittings = tuple(sorted(part.fittings.items()))
+    return PipeRun(part.length.ft, part.inside_diameter.inches, part.c, fittings, part.nominal)
 
 
 def design(entry: Entry, body: DesignRecord) -> Design:

@@ -4,10 +4,11 @@ from __future__ import annotations
 
 from typing import Annotated, Literal
 
+import msgspec
 from msgspec import Meta
 
 from fieldlog.procedures.envelope import Uid
-from fieldlog.procedures.fields import NOT_NEGATIVE, Day, Line, PipeRun, ValveState
+from fieldlog.procedures.fields import NOT_NEGATIVE, Day, Line, ValveState
 from fieldlog.procedures.procedure import Body, Problem, Procedure
 from fieldlog.units import Diameter, Discharge, Flow, Length, Pressure
 
@@ -30,18 +31,20 @@ class LossPoint(Body, frozen=True, kw_only=True):
     loss: Annotated[Pressure, Meta(title="Loss", extra=NOT_NEGATIVE)]
 
 
-class StatedLoss(Body, frozen=True, kw_only=True):
-    """A device whose loss is listed by its maker."""
-
-    of: Annotated[Line, Meta(title="Device")]
-    stated_loss: Annotated[tuple[LossPoint, ...], Meta(title="Listed loss", min_length=1)]
-
-
 class FeedPart(Body, frozen=True, kw_only=True):
-    """One part of the way from the hose point to the base of riser: a run of pipe or a listed loss."""
+    """One part of the way from the hose point to the base of riser: a run of pipe, or a device with listed loss."""
 
-    pipe: Annotated[PipeRun, Meta(title="Pipe")] | None = None
-    device: Annotated[StatedLoss, Meta(title="Device with listed loss")] | None = None
+    length: Annotated[Length, Meta(title="Length", extra=NOT_NEGATIVE)] | None = None
+    inside_diameter: Annotated[Diameter, Meta(title="Inside diameter")] | None = None
+    c: Annotated[int, Meta(title="C-factor", ge=20, le=160)] | None = None
+    nominal: (
+        Annotated[Line, Meta(title="Nominal size", description="decides the fittings' equivalent lengths")] | None
+    ) = None
+    fittings: Annotated[dict[str, Annotated[int, Meta(ge=1, le=99)]], Meta(title="Fittings")] = msgspec.field(
+        default_factory=dict
+    )
+    of: Annotated[Line, Meta(title="Device")] | None = None
+    stated_loss: Annotated[tuple[LossPoint, ...], Meta(title="Listed loss")] = ()
 
 
 class SystemValve(Body, frozen=True, kw_only=True):
@@ -79,14 +82,21 @@ class System(Body, frozen=True, kw_only=True):
 
 
 def _problems(body: System) -> list[Problem]:
-    found = []
-    for index, part in enumerate(body.feed):
-        if (part.pipe is None) == (part.device is None):
-            found.append(Problem(f"feed[{index}]", "give either a pipe or a device with its listed loss"))
+    found = [problem for index, part in enumerate(body.feed) for problem in _part_problems(part, f"feed[{index}]")]
     ids = [valve.id for valve in body.valves]
     if len(set(ids)) != len(ids):
         found.append(Problem("valves", "two valves have the same id; give each its own"))
     return found
+
+
+def _part_problems(part: FeedPart, where: str) -> list[Problem]:
+    of_pipe = {"length": part.length, "inside_diameter": part.inside_diameter, "c": part.c}
+    is_pipe = any(value is not None for value in of_pipe.values()) or part.nominal is not None or bool(part.fittings)
+    is_device = part.of is not None or bool(part.stated_loss)
+    if is_pipe == is_device:
+        return [Problem(where, "give either a run of pipe or a device with its listed loss")]
+    needed = of_pipe if is_pipe else {"of": part.of, "stated_loss": part.stated_loss or None}
+    return [Problem(f"{where}.{name}", "is needed; add it") for name, value in needed.items() if value is None]
 
 
 PROCEDURE = Procedure(

@@ -106,10 +106,9 @@ FULL: dict[str, dict[str, Any]] = {
             "k": {"value": "41.5", "unit": "gpm/psi^0.5"},
         },
         "feed": [
-            {"pipe": {"length": {"value": "90", "unit": "ft"}, "inside_diameter": {"value": "154.05", "unit": "mm"},
-                      "c": 120, "nominal": "6", "fittings": {"gate valve": 2}}},
-            {"device": {"of": "check assembly", "stated_loss": [
-                {"flow": {"value": "600", "unit": "gpm"}, "loss": psi("5")}]}},
+            {"length": {"value": "90", "unit": "ft"}, "inside_diameter": {"value": "154.05", "unit": "mm"},
+             "c": 120, "nominal": "6", "fittings": {"gate valve": 2}},
+            {"of": "check assembly", "stated_loss": [{"flow": {"value": "600", "unit": "gpm"}, "loss": psi("5")}]},
         ],
         "feed_changed_on": "2022-03-04", "alarm": "pressure switch", "installed_on": "2016-02-03",
         "valves": [{"id": "V2", "name": "Riser valve", "place": "riser", "normal": "open"}],
