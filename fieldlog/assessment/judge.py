@@ -38,11 +38,11 @@ class _Scene:
     """What stays the same while one system is judged."""
 
     history: SupplyHistory  # as known on the day
-    system: System
+    system: System  # with the tests of the window
+    whole: System  # with all tests: what they say of valves and of an altered drain does not age
     profile: RuleProfile | None
     as_of: date
     conditions: Conditions
-    left_out: int  # older tests beyond the window
     found: dict[int, Index | None] = field(default_factory=dict)  # by id of the test
 
     @property
@@ -91,9 +91,8 @@ def judge(
     said = []
     for whole in known.systems:
         system = _windowed(whole)
-        conditions = conditions_of(known.supply, system, gauges)
-        left_out = len(whole.drain_tests) - len(system.drain_tests)
-        scene = _Scene(known, system, profile, as_of, conditions, left_out)
+        conditions = replace(conditions_of(known.supply, whole, gauges), system=system)
+        scene = _Scene(known, system, whole, profile, as_of, conditions)
         said.append(_judge(scene, version, later))
     return tuple(said)
 
@@ -138,8 +137,8 @@ def _evidence(scene: _Scene, tests: Sequence[DrainTest]) -> Evidence:
     signs = standing_signs(tests, scene.conditions, lambda compared: _bands_of(scene, compared))
     plain = Evidence(
         scene.history.supply, scene.system, scene.instruments, scene.profile, scene.as_of, measured,
-        impairment=(*signs, *on_record(scene.system, scene.profile, scene.as_of)),
-        left_out=scene.left_out,
+        impairment=(*signs, *on_record(scene.whole, scene.profile, scene.as_of)),
+        left_out=len(scene.whole.drain_tests) - len(scene.system.drain_tests),
     )  # fmt: skip
     return _with_newest(scene, plain, read) if read else plain
 
@@ -260,7 +259,7 @@ def _valid_until(scene: _Scene, measured: Measured, later: date | None) -> date 
         tested += [] if measured.flow_test is None else [measured.flow_test.performed_on]
         if months is not None:
             days += [add_months(on, months) + timedelta(days=1) for on in tested]
-        days += _clocks(scene.system, profile.valve_shut_limit_hours())
+        days += _clocks(scene.whole, profile.valve_shut_limit_hours())
     days += [other.in_force_from for other in scene.history.profiles]
     return min((day for day in days if day is not None and day > scene.as_of), default=None)
 

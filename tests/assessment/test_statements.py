@@ -9,7 +9,7 @@ from typing import Any
 import pytest
 
 from fieldlog.records.criteria import MarginRule
-from fieldlog.records.history import SupplyHistory
+from fieldlog.records.history import SupplyHistory, ValveFound
 from fieldlog.records.rules import Rule
 from fieldlog.records.statement import Statement
 from fieldlog.units import Pressure
@@ -243,6 +243,26 @@ def test_the_statics_of_a_tank_are_brought_to_its_reference_level() -> None:
     assert "static_outside_band" not in codes(said_of(history(system(*years, low), supply=tank)))
     full = replace(low, tank_level_ft=30.0)
     assert "static_outside_band" in codes(said_of(history(system(*years, full), supply=tank)))
+
+
+def many(*first: Any) -> tuple[Any, ...]:
+    """The first tests, and 204 weekly ones after them."""
+    weekly = [drained(date(2020, 1, 6) + timedelta(weeks=n), "81", "66" if n % 3 else "65") for n in range(204)]
+    return (*first, *weekly)
+
+
+def test_beyond_two_hundred_tests_the_older_ones_are_left_out_and_counted() -> None:
+    statement = said(*many(acceptance("2015-04-12", "81", "67"), drained("2016-05-02", "82", "70")))
+    left_out = next(reason for reason in statement.reasons if reason.code == "older_tests_left_out")
+    assert left_out.numbers["tests"] == 5
+    assert {row.against: row.entry for row in statement.ten_percent}["acceptance"] == date(2015, 4, 12).toordinal()
+
+
+def test_what_an_old_test_says_of_the_drain_or_a_valve_does_not_age() -> None:
+    altered = drained("2016-05-02", "82", "70", drain_unchanged=False)
+    assert "acceptance" not in {row.against for row in said(*many(acceptance("2015-04-12"), altered)).ten_percent}
+    left = drained("2016-05-02", "82", "70", valves=(ValveFound("post", "open", "shut"),))
+    assert said(*many(acceptance("2015-04-12"), left)).statement == IMPAIRED
 
 
 # As of, until when, which systems
