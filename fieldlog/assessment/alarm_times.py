@@ -27,14 +27,14 @@ def alarm_findings(system: System, profile: RuleProfile | None, as_of: date) -> 
     ----------
     system : System
         The system and its inspector's tests [-].
-    profile : RuleProfile or None
+    profile : RuleProfile | None
         The rules: limits in seconds [-].
     as_of : date
         The day judged [-].
 
     Returns
     -------
-    tuple of Reason
+    tuple[Reason, ...]
         Findings [s].
 
     References

@@ -36,7 +36,7 @@ def blind_loss(
 
     Parameters
     ----------
-    earlier : sequence of Index
+    earlier : Sequence[Index]
         Comparable tests before the newest, since the reference, at least one [-].
     newest : Index
         The newest test [-].
@@ -49,7 +49,7 @@ def blind_loss(
 
     Returns
     -------
-    BlindLoss or None
+    BlindLoss | None
         Losses [psi]; None without an earlier test.
 
     References
@@ -89,7 +89,7 @@ def smallest_loss(look: Look) -> float | None:
 
     Returns
     -------
-    float or None
+    float | None
         Loss at the demand; None where no loss short of a shut valve would surely have shown [psi].
 
     References

@@ -77,7 +77,7 @@ def comparisons(tests: Sequence[DrainTest], conditions: Conditions) -> Compariso
 
     Parameters
     ----------
-    tests : sequence of DrainTest
+    tests : Sequence[DrainTest]
         Tests with a residual, oldest first, at least one [-].
     conditions : Conditions
         Supply, system and gauges [-].
@@ -126,7 +126,7 @@ def own_faults(test: DrainTest, instruments: Instruments) -> tuple[Reason, ...]:
 
     Returns
     -------
-    tuple of Reason
+    tuple[Reason, ...]
         Empty where it can be [-].
 
     References
@@ -160,7 +160,7 @@ def pair_differences(newer: DrainTest, older: DrainTest, conditions: Conditions)
 
     Returns
     -------
-    tuple of Reason
+    tuple[Reason, ...]
         Empty where they can be compared [-].
 
     References
@@ -217,7 +217,7 @@ def pump_state(test: DrainTest) -> PumpState | None:
 
     Returns
     -------
-    str or None
+    PumpState | None
         none, off, jockey or running [-].
 
     References

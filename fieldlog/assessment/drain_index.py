@@ -56,12 +56,12 @@ def index_of(
         Its system: the drain's outlet [-].
     instruments : Instruments
         Its gauges [-].
-    reference_level_ft : float, optional
+    reference_level_ft : float | None
         Level of a gravity tank to which its statics are brought [ft].
 
     Returns
     -------
-    Index or None
+    Index | None
         Index and 1 sigma [psi^0.075].
 
     References
@@ -94,7 +94,7 @@ def pump_started(test: DrainTest) -> Reason | None:
 
     Returns
     -------
-    Reason or None
+    Reason | None
         Both states [-].
 
     References
@@ -192,14 +192,14 @@ def drain_k(drain: Drain | None, tests: Sequence[DrainTest] = ()) -> float | Non
 
     Parameters
     ----------
-    drain : Drain or None
+    drain : Drain | None
         The drain [-].
-    tests : sequence of DrainTest
+    tests : Sequence[DrainTest]
         Comparable tests, oldest first: the newest with a pitot reading and a residual counts [-].
 
     Returns
     -------
-    float or None
+    float | None
         K; None where not even the size is known [gpm/psi^0.5].
 
     References

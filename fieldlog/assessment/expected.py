@@ -48,14 +48,14 @@ def student_interval(values: Sequence[float], least_sigma: float) -> Interval | 
 
     Parameters
     ----------
-    values : sequence of float
+    values : Sequence[float]
         Earlier values [-].
     least_sigma : float
         1 sigma of reading: the spread is never taken smaller [-].
 
     Returns
     -------
-    Interval or None
+    Interval | None
         Central 99 percent interval [-].
 
     References
@@ -123,12 +123,12 @@ def expected(earlier: Sequence[Index]) -> Expected | None:
 
     Parameters
     ----------
-    earlier : sequence of Index
+    earlier : Sequence[Index]
         Comparable tests with static and index [-].
 
     Returns
     -------
-    Expected or None
+    Expected | None
         Bands [psi].
 
     References

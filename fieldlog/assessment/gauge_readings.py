@@ -26,20 +26,20 @@ def gauge_findings(
 
     Parameters
     ----------
-    gauges : iterable of Gauge
+    gauges : Iterable[Gauge]
         The gauges in question [-].
-    readings : sequence of GaugeReading
+    readings : Sequence[GaugeReading]
         Their routine readings, oldest first [-].
     instruments : Instruments
         For the error of a reading [-].
-    profile : RuleProfile or None
+    profile : RuleProfile | None
         The rules: accuracy asked of a gauge [-].
     as_of : date
         The day judged [-].
 
     Returns
     -------
-    tuple of Reason
+    tuple[Reason, ...]
         Findings [psi].
 
     References

@@ -29,12 +29,12 @@ def signs_of(compared: Comparisons, conditions: Conditions, bands: Expected | No
         The newest test and what it is held against [-].
     conditions : Conditions
         Its system and gauges [-].
-    bands : Expected or None
+    bands : Expected | None
         Expected bands by the earlier tests [psi].
 
     Returns
     -------
-    tuple of Reason
+    tuple[Reason, ...]
         Signs [-].
 
     References
@@ -57,7 +57,7 @@ def shows_by_itself(test: DrainTest, conditions: Conditions) -> tuple[Reason, ..
 
     Returns
     -------
-    tuple of Reason
+    tuple[Reason, ...]
         Signs [-].
 
     References
@@ -74,7 +74,7 @@ def answers(compared: Comparisons, signs: Sequence[Reason], conditions: Conditio
     ----------
     compared : Comparisons
         The later test and what it is held against [-].
-    signs : sequence of Reason
+    signs : Sequence[Reason]
         Signs that stand [-].
     conditions : Conditions
         Its system and gauges [-].
@@ -105,14 +105,14 @@ def on_record(system: System, profile: RuleProfile | None, as_of: date) -> tuple
     ----------
     system : System
         The system [-].
-    profile : RuleProfile or None
+    profile : RuleProfile | None
         The rules: hours a valve may be shut [-].
     as_of : date
         The day judged [-].
 
     Returns
     -------
-    tuple of Reason
+    tuple[Reason, ...]
         One each [-].
 
     References
@@ -140,7 +140,7 @@ def open_impairments(system: System) -> tuple[Reason, ...]:
 
     Returns
     -------
-    tuple of Reason
+    tuple[Reason, ...]
         One each [-].
 
     References

@@ -43,7 +43,7 @@ def places_to_look(newest: Index, earlier: Index) -> tuple[str, ...]:
 
     Returns
     -------
-    tuple of str
+    tuple[str, ...]
         CheckCodes [-].
 
     References
@@ -58,14 +58,14 @@ def places_by_signs(signs: AbstractSet[str], *, is_bled_off: bool) -> tuple[str,
 
     Parameters
     ----------
-    signs : set of str
+    signs : AbstractSet[str]
         Codes of the signs of an impairment in it [-].
     is_bled_off : bool
         Static after stood under static before [-].
 
     Returns
     -------
-    tuple of str
+    tuple[str, ...]
         CheckCodes [-].
 
     References
@@ -118,7 +118,7 @@ def checks_for(difference: Difference) -> tuple[str, ...]:
 
     Returns
     -------
-    tuple of str
+    tuple[str, ...]
         CheckCodes [-].
 
     References

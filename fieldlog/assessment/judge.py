@@ -10,7 +10,7 @@ from fieldlog.assessment import constants
 from fieldlog.assessment.alarm_times import alarm_findings
 from fieldlog.assessment.blind_loss import blind_loss
 from fieldlog.assessment.codes import ReasonCode
-from fieldlog.assessment.comparable import Comparisons, Conditions, comparisons, conditions_of
+from fieldlog.assessment.comparable import Comparisons, Conditions, comparisons, conditions_of, own_faults
 from fieldlog.assessment.drain_index import Index, drain_k, index_of
 from fieldlog.assessment.expected import Expected, expected
 from fieldlog.assessment.gauge_readings import gauge_findings
@@ -71,14 +71,14 @@ def judge(
         Everything on record about the supply; order of its records does not matter [-].
     as_of : date
         The day judged: later records do not count [-].
-    profile : RuleProfile or None
+    profile : RuleProfile | None
         The rules in force; None: the adopted standard is not recorded [-].
     version : str
         Version of the program, kept with each statement [-].
 
     Returns
     -------
-    tuple of SystemStatement
+    tuple[SystemStatement, ...]
         One a system, in the history's order [-].
 
     References
@@ -225,7 +225,9 @@ def _worse_before(scene: _Scene, evidence: Evidence, verdict: Verdict) -> Statem
     tests = scene.system.drain_tests
     for count in range(len(tests) - 1, 0, -1):
         read = [test for test in tests[:count] if test.residual is not None]
-        if read and not comparisons(read, scene.conditions).differs:
+        if not read or own_faults(read[-1], scene.instruments):
+            continue
+        if not comparisons(read, scene.conditions).differs:
             before = decide(_evidence(scene, tests[:count])).statement
             return before if before.rank < Statement.NOT_COMPARABLE.rank else None
     return None

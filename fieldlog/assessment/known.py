@@ -53,7 +53,7 @@ def next_record_after(history: SupplyHistory, as_of: date) -> date | None:
 
     Returns
     -------
-    date or None
+    date | None
         From that day on the record counts [-].
 
     References

@@ -63,7 +63,7 @@ def measured_supply(history: SupplyHistory, system: System, profile: RuleProfile
         The supply and its flow tests [-].
     system : System
         The system with its design record, feed and forward-flow tests [-].
-    profile : RuleProfile or None
+    profile : RuleProfile | None
         The rules: age of a flow test, margin [-].
     as_of : date
         The day judged [-].
@@ -103,7 +103,7 @@ def newest_flow_test(history: SupplyHistory, as_of: date) -> FlowTest | None:
 
     Returns
     -------
-    FlowTest or None
+    FlowTest | None
         The test [-].
 
     References
@@ -129,7 +129,7 @@ def demand_of(system: System) -> Demand | None:
 
     Returns
     -------
-    Demand or None
+    Demand | None
         Flows [gpm] and required pressure [psi].
 
     References

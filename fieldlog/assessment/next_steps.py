@@ -60,7 +60,7 @@ def next_steps(verdict: Verdict, evidence: Evidence) -> tuple[str, ...]:
 
     Returns
     -------
-    tuple of str
+    tuple[str, ...]
         NextCodes [-].
 
     References
@@ -89,7 +89,7 @@ def cannot_show(history: SupplyHistory, system: System) -> tuple[str, ...]:
 
     Returns
     -------
-    tuple of str
+    tuple[str, ...]
         CannotShow codes [-].
 
     References

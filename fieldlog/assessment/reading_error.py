@@ -55,7 +55,7 @@ def reading_sigma(division_psi: float, half_swing_psi: float | None = None) -> f
     ----------
     division_psi : float
         Smallest division, or the step that readings are heaped on [psi].
-    half_swing_psi : float, optional
+    half_swing_psi : float | None
         Half the noted swing of the needle, in place of the usual 0.5 psi [psi].
 
     Returns
@@ -90,6 +90,10 @@ def instruments(history: SupplyHistory, as_of: date) -> Instruments:
     -------
     Instruments
         Gauges by uid, heaps by reading [psi].
+
+    References
+    ----------
+    DEVELOPERS.md, Method §1.
     """
     gauges = {gauge.uid: gauge for gauge in (*history.supply_gauges, *history.organisation_gauges)}
     runs: dict[str, dict[_Place, list[Reading]]] = {}
@@ -108,12 +112,12 @@ def heap_psi(newest: Sequence[Reading]) -> float | None:
 
     Parameters
     ----------
-    newest : sequence of Reading
+    newest : Sequence[Reading]
         The newest six readings of the gauge; fewer tell nothing [-].
 
     Returns
     -------
-    float or None
+    float | None
         The step; None where there is none [psi].
 
     References
@@ -136,7 +140,7 @@ def gauge_bias(gauge: Gauge | None, mean_psi: float, on: date) -> Bias:
 
     Parameters
     ----------
-    gauge : Gauge or None
+    gauge : Gauge | None
         The gauge; None where it is not on record [-].
     mean_psi : float
         Mean reading of the gauge: its quarter of the range decides the percent [psi].
@@ -168,7 +172,7 @@ def replaced_sigma(newest: Reading, earlier: Sequence[Reading], found: Instrumen
     ----------
     newest : Reading
         A reading with the gauge in question [psi].
-    earlier : sequence of Reading
+    earlier : Sequence[Reading]
         Earlier readings of the same quantity, oldest first [psi].
     found : Instruments
         The gauges [-].

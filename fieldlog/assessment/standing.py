@@ -29,16 +29,16 @@ def standing_signs(
 
     Parameters
     ----------
-    tests : sequence of DrainTest
+    tests : Sequence[DrainTest]
         Tests of one system, oldest first [-].
     conditions : Conditions
         What they are compared under [-].
-    bands_of : callable
+    bands_of : Callable[[Comparisons], Expected | None]
         Expected bands of the newest test of a comparison [psi].
 
     Returns
     -------
-    tuple of Reason
+    tuple[Reason, ...]
         Signs, with the day they are from where that is not the newest test's [-].
 
     References

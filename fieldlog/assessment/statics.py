@@ -36,7 +36,7 @@ def static_of(test: DrainTest, instruments: Instruments) -> Static | None:
 
     Returns
     -------
-    Static or None
+    Static | None
         Static and 1 sigma [psi].
 
     References

@@ -23,12 +23,12 @@ def ten_percent(compared: Comparisons, instruments: Instruments, profile: RulePr
         The newest test and what it is held against [-].
     instruments : Instruments
         The gauges, for the error of the reduction [-].
-    profile : RuleProfile or None
+    profile : RuleProfile | None
         The rules: another percentage than ten [-].
 
     Returns
     -------
-    tuple of TenPercent
+    tuple[TenPercent, ...]
         Reductions as shares, with flags [-].
 
     References
@@ -43,7 +43,7 @@ def percent_of(profile: RuleProfile | None) -> Fraction:
 
     Parameters
     ----------
-    profile : RuleProfile or None
+    profile : RuleProfile | None
         The rules [-].
 
     Returns

@@ -27,12 +27,12 @@ def trends(tests: Sequence[Index]) -> tuple[Trend, ...]:
 
     Parameters
     ----------
-    tests : sequence of Index
+    tests : Sequence[Index]
         Comparable tests, oldest first [-].
 
     Returns
     -------
-    tuple of Trend
+    tuple[Trend, ...]
         Slopes a year; empty from fewer than six dates [-].
 
     References
@@ -54,14 +54,14 @@ def theil_sen(years: Sequence[float], values: Sequence[float]) -> tuple[float, f
 
     Parameters
     ----------
-    years : sequence of float
+    years : Sequence[float]
         Times, at least two different ones [a].
-    values : sequence of float
+    values : Sequence[float]
         Values [-].
 
     Returns
     -------
-    tuple of float
+    tuple[float, float, float]
         Slope, lower and upper end [1/a].
 
     References
@@ -88,9 +88,9 @@ def mann_kendall(years: Sequence[float], values: Sequence[float]) -> float:
 
     Parameters
     ----------
-    years : sequence of float
+    years : Sequence[float]
         Times [a].
-    values : sequence of float
+    values : Sequence[float]
         Values [-].
 
     Returns

@@ -44,7 +44,7 @@ def shut_spells(system: System) -> dict[str, ShutSpell]:
 
     Returns
     -------
-    dict of str to ShutSpell
+    dict[str, ShutSpell]
         By valve; one that a later test found open without a spell of its own is left out [-].
 
     References
