@@ -8,6 +8,7 @@ from msgspec import Meta
 
 from fieldlog.procedures.envelope import Words
 from fieldlog.procedures.fields import ClockTime, Day, Instrument, Kept, Line, Photo, PumpState, Restoration, ValveFound
+from fieldlog.procedures.limits import is_before
 from fieldlog.procedures.procedure import Body, Caution, Problem
 from fieldlog.units import Length, Temperature
 
@@ -44,8 +45,11 @@ def common_problems(body: AnyTest) -> list[Problem]:
     found = []
     if body.done != "done" and body.not_done_reason is None:
         found.append(Problem("not_done_reason", "say why it was not or only partly done"))
-    if body.start is not None and body.end is not None and body.end < body.start:
-        found.append(Problem("end", f"ends at {body.end}, before it starts at {body.start}; mend one of them"))
+    for index, valve in enumerate(body.valves):
+        shut, opened = valve.shut_at, valve.opened_at
+        if valve.left == "open" and shut is not None and opened is not None and is_before(opened, shut):
+            message = f"opened at {opened}, before it was shut at {shut}, and left open; mend one of them"
+            found.append(Problem(f"valves[{index}].opened_at", message))
     return found
 
 
@@ -63,9 +67,13 @@ BEFORE_WATER_FLOWS = (
     Caution("interlocks_held", "Interlocks held: elevators, ventilation, releasing, process shut-down"),
     Caution(
         "outlet_takes_full_flow",
-        "Outlet can take full flow: nobody in its way, no harm, no ice, no glass or wiring",
+        "Outlet can take full flow: nobody in its way; no vehicles, glass, electrical rooms, slopes, neighbours' "
+        "ground or ice. One that can't gives a residual that is not to be compared: say so",
     ),
-    Caution("not_to_drain", "No antifreeze, foam, dye or treated water to soil or storm drain"),
+    Caution("not_frozen", "Drain and outlet not frozen"),
+    Caution("not_to_drain", "No glycol, foam, dye or chlorinated water to soil or storm drain"),
+    Caution("no_antifreeze_or_foam", "Not an antifreeze or foam system: those are not run to a drain"),
+    Caution("no_trip", "Dry or preaction valve secured, so that a drain test does not trip it"),
     Caution("valves_open", "Control valves open: checked by hand or indicator, sealed or locked"),
     Caution("pump_attended", "A pump that may start is attended"),
     Caution("protection_worn", "Eye and hearing protection; hose secured; pits and vaults as confined spaces"),

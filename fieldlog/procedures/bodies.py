@@ -44,7 +44,8 @@ def decode_body(kind: str, body: Mapping[str, Any]) -> msgspec.Struct:
         typed = msgspec.convert(body, procedure.body)
     except msgspec.ValidationError as error:
         raise shape_refusal(error, "body", lambda path: _choices_at(procedure.body, path)) from error
-    problems = limit_problems(typed) + procedure.check(typed)
+    # Cross-checks compare days and times, so these must be ones.
+    problems = limit_problems(typed) or procedure.check(typed)
     if problems:
         raise _refusal(problems)
     return typed

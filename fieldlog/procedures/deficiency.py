@@ -9,6 +9,7 @@ from msgspec import Meta
 from fieldlog.procedures.any_test import WHILE_IMPAIRED
 from fieldlog.procedures.envelope import Uid, Words
 from fieldlog.procedures.fields import Day, Line, Photo, ZonedTime
+from fieldlog.procedures.limits import is_before
 from fieldlog.procedures.procedure import Body, Problem, Procedure
 
 
@@ -41,6 +42,8 @@ class Deficiency(Body, frozen=True, kw_only=True, rename={"class_": "class"}):
 def _problems(body: Deficiency) -> list[Problem]:
     if body.class_ == "impairment" and body.began_at is None:
         return [Problem("began_at", "say when the impairment began: its clock runs from there")]
+    if body.began_at is not None and body.ended_at is not None and is_before(body.ended_at, body.began_at):
+        return [Problem("ended_at", f"ends at {body.ended_at}, before it began at {body.began_at}; mend one of them")]
     return []
 
 

@@ -18,9 +18,9 @@ Uid = Annotated[
 ]
 Timestamp = Annotated[str, msgspec.Meta(pattern=r"^[0-9]{4}-[0-9]{2}-[0-9]{2}T[0-9]{2}:[0-9]{2}:[0-9]{2}Z(?!\n)$")]
 Sha256 = Annotated[str, msgspec.Meta(pattern=r"^[0-9a-f]{64}(?!\n)$")]
-# One line that shows something; several lines. Neither holds what would steer a terminal or break a document.
+# One line; several lines. Both show something, and neither holds what would steer a terminal or break a document.
 LINE = r"^(?=.*\S)[^\x00-\x1f\x7f-\x9f\u2028\u2029]+(?!\n)$"
-WORDS = r"^[^\x00-\x08\x0b\x0c\x0e-\x1f\x7f-\x9f]*$"
+WORDS = r"^(?=[\s\S]*\S)[^\x00-\x08\x0b\x0c\x0e-\x1f\x7f-\x9f]*$"
 Words = Annotated[str, msgspec.Meta(min_length=1, max_length=4000, pattern=WORDS)]
 
 Kind = Literal[

@@ -6,7 +6,7 @@ from typing import Annotated, Literal
 
 from msgspec import Meta
 
-from fieldlog.procedures.envelope import Uid
+from fieldlog.procedures.envelope import Envelope, Uid
 from fieldlog.procedures.fields import ABOVE_ZERO, Day, Line
 from fieldlog.procedures.procedure import Body, Problem, Procedure
 from fieldlog.units import Length, Pressure
@@ -42,9 +42,29 @@ def _problems(body: Gauge) -> list[Problem]:
         found.append(Problem("supply", "say which water supply the gauge belongs to"))
     if body.range is not None and body.division is not None and body.division.exact() >= body.range.exact():
         found.append(Problem("division", "the smallest division is not below the range; mend one of them"))
+    if body.replaces is not None and body.installed_on is None:
+        found.append(Problem("installed_on", "say since when it stands in place of the other, which ends then"))
+    if body.installed_on is not None and body.ended_on is not None and body.ended_on < body.installed_on:
+        found.append(Problem("ended_on", f"taken out on {body.ended_on}, before it was installed; mend one of them"))
     if body.normal_low and body.normal_high and body.normal_low.exact() >= body.normal_high.exact():
         found.append(Problem("normal_high", "the normal range ends at or below its start; mend one of them"))
     return found
 
 
-PROCEDURE = Procedure("gauge", "Gauge", Gauge, frozenset({"technician", "office"}), check=_problems)
+def _place_problems(envelope: Envelope, body: Gauge) -> list[Problem]:
+    needed = {"system": ("site", "system"), "supply": ("site",), "organisation": ()}[body.of]
+    found = [
+        Problem(name, f"a gauge of a {body.of} names its {name}; add it")
+        for name in needed
+        if getattr(envelope, name) is None
+    ]
+    if body.of == "organisation" and envelope.site is not None:
+        found.append(Problem("site", "a test gauge of the organisation belongs to no site; leave it out"))
+    if body.replaces == envelope.subject:
+        found.append(Problem("body.replaces", "a gauge can't replace itself; name the one before it"))
+    return found
+
+
+PROCEDURE = Procedure(
+    "gauge", "Gauge", Gauge, frozenset({"technician", "office"}), check=_problems, check_place=_place_problems
+)

@@ -44,6 +44,11 @@ def limits_of(metas: list[msgspec.Meta], bare: Any) -> dict[str, str]:  # noqa: 
     return said
 
 
+def is_before(one: str, other: str) -> bool:
+    """Return whether a time with its zone is before another; both were found to be times."""
+    return datetime.fromisoformat(one) < datetime.fromisoformat(other)
+
+
 def metas_of(hint: Any) -> tuple[list[msgspec.Meta], Any]:  # noqa: ANN401  a type annotation of any shape
     """Return what is said of a field's type, outermost first, and the bare type without None."""
     if get_origin(hint) is Annotated:

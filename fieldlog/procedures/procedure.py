@@ -8,6 +8,8 @@ from typing import Any, Literal
 
 import msgspec
 
+from fieldlog.procedures.envelope import Envelope
+
 Role = Literal["technician", "office", "owner", "instance"]
 
 
@@ -37,6 +39,11 @@ def no_problems(_body: Any) -> list[Problem]:  # noqa: ANN401  a body of any kin
     return []
 
 
+def in_its_place(_envelope: Envelope, _body: Any) -> list[Problem]:  # noqa: ANN401
+    """Return no problem: what the kind needs is named in the envelope, and the body adds nothing to it."""
+    return []
+
+
 @dataclass(frozen=True, slots=True)
 class Procedure:
     """One kind of entry."""
@@ -50,3 +57,4 @@ class Procedure:
     steps: tuple[str, ...] = ()
     cautions: tuple[Caution, ...] = ()
     check: Callable[[Any], list[Problem]] = no_problems
+    check_place: Callable[[Envelope, Any], list[Problem]] = in_its_place

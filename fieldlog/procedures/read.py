@@ -30,7 +30,10 @@ def parse(text: str) -> Parsed:
     """
     envelope = parse_envelope(text)
     _require_places(envelope)
-    return Parsed(envelope, decode_body(envelope.kind, envelope.body))
+    body = decode_body(envelope.kind, envelope.body)
+    for problem in PROCEDURES[envelope.kind].check_place(envelope, body):
+        raise InputError(f"{problem.field}: {problem.message}", field=problem.field)
+    return Parsed(envelope, body)
 
 
 def _require_places(envelope: Envelope) -> None:

@@ -8,7 +8,7 @@ from msgspec import Meta
 
 from fieldlog.procedures.envelope import Uid, Words
 from fieldlog.procedures.fields import Day, Line, Photo
-from fieldlog.procedures.procedure import Body, Procedure
+from fieldlog.procedures.procedure import Body, Problem, Procedure
 
 
 class Remedy(Body, frozen=True, kw_only=True):
@@ -24,4 +24,12 @@ class Remedy(Body, frozen=True, kw_only=True):
     photos: Annotated[tuple[Photo, ...], Meta(title="Photos", max_length=12)] = ()
 
 
-PROCEDURE = Procedure("remedy", "Remedy", Remedy, frozenset({"technician", "office", "owner"}), frozenset({"site"}))
+def _problems(body: Remedy) -> list[Problem]:
+    if body.evidence is None and not body.photos:
+        return [Problem("evidence", "say what shows that it is done, or add a photo")]
+    return []
+
+
+PROCEDURE = Procedure(
+    "remedy", "Remedy", Remedy, frozenset({"technician", "office", "owner"}), frozenset({"site"}), check=_problems
+)

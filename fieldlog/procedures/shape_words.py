@@ -26,7 +26,7 @@ _FORMS = (
     (r"^[0-9](", "a percentage below 10 is expected, such as 0.5"),
     (r"(\.[0-9]", "a decimal number as text is expected, such as 72.5"),
     (r"\u2028", "one line of text is expected, without control characters"),
-    (r"^[^\x00-\x08", "text without control characters is expected"),
+    (r"[^\x00-\x08", "text without control characters is expected"),
 )
 
 
@@ -68,6 +68,8 @@ def _expected(said: str) -> str:
     if "matching regex" in said:
         pattern = said.split("matching regex", 1)[1].replace("\\\\", "\\")
         return next((words for part, words in _FORMS if part in pattern), "it is not in the expected form")
+    if said.endswith("of length >= 1"):
+        return "it can't be empty"
     if size := re.fullmatch(r"Expected `(\w+)` of length (>=|<=) (\d+)", said):
         return f"{_BOUNDS[size[2]]} {size[3]} {'characters' if size[1] == 'str' else 'items'} are expected"
     if bound := re.fullmatch(r"Expected `\w+` (>=|<=) (-?\d+)", said):

@@ -15,6 +15,7 @@ from fieldlog.procedures.any_test import (
     missing,
 )
 from fieldlog.procedures.fields import Line, PressureReading, ZonedTime
+from fieldlog.procedures.limits import is_before
 from fieldlog.procedures.procedure import Problem, Procedure
 
 
@@ -33,7 +34,11 @@ class ValveStatusTest(AnyTest, frozen=True, kw_only=True):
 
 
 def _problems(body: ValveStatusTest) -> list[Problem]:
-    return common_problems(body) + missing(body, "valve", "flow_seen")
+    found = common_problems(body) + missing(body, "valve", "flow_seen")
+    closed, reopened = body.closed_at, body.reopened_at
+    if closed is not None and reopened is not None and is_before(reopened, closed):
+        found.append(Problem("reopened_at", f"reopened at {reopened}, before it was closed at {closed}; mend one"))
+    return found
 
 
 PROCEDURE = Procedure(

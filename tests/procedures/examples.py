@@ -72,7 +72,9 @@ MINIMAL: dict[str, dict[str, Any]] = {
         "points": [{"reference": psi("60"), "shown": psi("62")}],
     },
     "deficiency": {"text": "Grate missing", "found_on": "2026-10-03", "class": "noncritical", "proposed_by": "fieldlog"},
-    "remedy": {"deficiency": DEFICIENCY, "done_on": "2026-10-09", "by": "Technician A"},
+    "remedy": {
+        "deficiency": DEFICIENCY, "done_on": "2026-10-09", "by": "Technician A", "evidence": "no leak in flow",
+    },
     "note": {"text": "Key with gate 12"},
     "sign_off": {
         "covers": [{"uid": GAUGE, "sha256": SHA}], "summary": "Only the listed items were done.",

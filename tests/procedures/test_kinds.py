@@ -48,8 +48,13 @@ examples.MINIMAL["rule_profile"] = examples.FULL["rule_profile"] = profile()
 BODIES = [(kind, body) for bodies in (examples.MINIMAL, examples.FULL) for kind, body in sorted(bodies.items())]
 
 
+def places_of(kind: str) -> dict[str, str]:
+    names = {"site", "system"} if kind == "gauge" else PROCEDURES[kind].needs
+    return {name: PLACES[name] for name in names}
+
+
 def text_of(kind: str, body: dict[str, Any], **more: Any) -> str:
-    needed = {name: PLACES[name] for name in PROCEDURES[kind].needs}
+    needed = places_of(kind)
     plain = {
         "uid": examples.PERSON, "subject": examples.PERSON, "author": examples.OTHER, "format": 1, "kind": kind,
         "made_at": "2026-10-03T10:00:00Z", "body": body, **needed, **more,
@@ -70,7 +75,7 @@ def test_a_body_comes_back_as_it_went_in(kind: str, body: dict[str, Any]) -> Non
     parsed = parse(text_of(kind, body))
     again = compose(
         kind, parsed.body, uid=examples.PERSON, author=examples.OTHER, made_at="2026-10-03T10:00:00Z",
-        **{name: PLACES[name] for name in PROCEDURES[kind].needs},
+        **places_of(kind),
     )  # fmt: skip
     assert parse(again).body == parsed.body
     assert decode_body(kind, plain_body(parsed.body)) == parsed.body
@@ -108,12 +113,24 @@ def test_an_unknown_field_is_refused_by_name(kind: str, body: dict[str, Any]) ->
         ("main_drain_test", {"residual": 54}, "body.residual"),
         ("main_drain_test", {"performed_on": "3 Oct"}, "body.performed_on"),
         ("main_drain_test", {"fully_open": "yes"}, "body.fully_open"),
-        ("main_drain_test", {"start": "10:00", "end": "09:00"}, "body.end"),
         ("main_drain_test", {"done": "partly"}, "body.not_done_reason"),
-        ("main_drain_test", {"did_not_recover": True, "steady": True}, "body.steady"),
+        ("main_drain_test", {"valves": [{"id": "V1", "left": "open", "shut_at": "2026-10-03T10:00Z",
+                                         "opened_at": "2026-10-03T10:30+01:00"}]}, "body.valves[0].opened_at"),
         ("system", {"feed": [{}]}, "body.feed[0]"),
+        ("system", {"feed": [{"c": 120, "of": "check assembly"}]}, "body.feed[0]"),
+        ("system", {"feed": [{"of": "check assembly"}]}, "body.feed[0].stated_loss"),
+        ("system", {"feed": [{"c": 120}]}, "body.feed[0].length"),
+        ("system", {"valves": [{"id": "V1"}, {"id": "V1"}]}, "body.valves"),
         ("system", {"type": "misty"}, "body.type"),
         ("gauge", {"of": "supply"}, "body.supply"),
+        ("gauge", {"replaces": examples.OTHER}, "body.installed_on"),
+        ("gauge", {"installed_on": "2026-03-04", "ended_on": "2026-03-03"}, "body.ended_on"),
+        ("gauge", {"of": "organisation"}, "site"),
+        ("gauge", {"replaces": examples.PERSON, "installed_on": "2026-03-04"}, "body.replaces"),
+        ("remedy", {"evidence": "  "}, "body.evidence"),
+        ("deficiency", {"began_at": "2026-10-03T09:00Z", "ended_at": "2026-10-03T10:30+02:00"}, "body.ended_at"),
+        ("valve_status_test", {"closed_at": "2026-10-03T09:00Z", "reopened_at": "2026-10-02T09:00Z"},
+         "body.reopened_at"),
         ("gauge", {"range": examples.psi("60"), "division": examples.psi("60")}, "body.division"),
         ("site", {"zone": "Nowhere/Else"}, "body.zone"),
         ("flow_test", {"points": [{"residual": examples.psi("60")}]}, "body.points[0].flow"),
@@ -156,6 +173,28 @@ def test_an_envelope_that_does_not_fit_is_refused_by_field(more: dict[str, Any],
     with pytest.raises(InputError) as refused:
         parse(text_of("note", examples.MINIMAL["note"], **more))
     assert refused.value.field == field
+
+
+def test_nights_and_steady_falls_are_honest_records() -> None:
+    parse(text_of("main_drain_test", examples.MINIMAL["main_drain_test"] | {"start": "23:40", "end": "00:20"}))
+    fell = {"static_after": examples.psi("61"), "steady": True, "did_not_recover": True}
+    parse(text_of("main_drain_test", examples.MINIMAL["main_drain_test"] | fell))
+
+
+def test_a_remedy_needs_words_or_a_photo_as_evidence() -> None:
+    told = {name: value for name, value in examples.MINIMAL["remedy"].items() if name != "evidence"}
+    with pytest.raises(InputError, match="say what shows"):
+        parse(text_of("remedy", told))
+    parse(text_of("remedy", told | {"photos": examples.TEST["photos"]}))
+
+
+@pytest.mark.parametrize("missing", ["site", "system"])
+def test_a_gauge_of_a_system_names_site_and_system(missing: str) -> None:
+    plain = json.loads(text_of("gauge", examples.MINIMAL["gauge"]))
+    del plain[missing]
+    with pytest.raises(InputError) as refused:
+        parse(canonical_text(plain))
+    assert refused.value.field == missing
 
 
 def test_a_test_without_its_system_is_refused() -> None:
@@ -249,9 +288,15 @@ def test_who_may_make_which(kind: str) -> None:
 
 
 def test_where_water_flows_the_usual_cautions_are_there() -> None:
-    for kind in ("main_drain_test", "flow_test", "forward_flow_test", "inspectors_test"):
-        codes = {caution.code for caution in PROCEDURES[kind].cautions}
-        assert {"monitoring_told", "outlet_takes_full_flow", "open_slowly", "alarms_restored", "drain_shut"} <= codes
+    before = {
+        "monitoring_told", "interlocks_held", "outlet_takes_full_flow", "not_frozen", "not_to_drain",
+        "no_antifreeze_or_foam", "no_trip", "valves_open", "pump_attended", "protection_worn", "open_slowly",
+    }  # fmt: skip
+    after = {"drain_shut", "valves_secured", "pressures_back", "alarms_restored", "owner_told"}
+    for kind in ("main_drain_test", "flow_test", "forward_flow_test", "inspectors_test", "valve_status_test"):
+        cautions = PROCEDURES[kind].cautions
+        assert {caution.code for caution in cautions if caution.when == "before"} >= before
+        assert {caution.code for caution in cautions if caution.when == "after"} >= after
     assert "fire_watch" in {caution.code for caution in PROCEDURES["deficiency"].cautions}
 
 
