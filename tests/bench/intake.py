@@ -64,7 +64,9 @@ def readings(entries: int) -> list[Made]:
         "static_before": {"value": "72.5", "unit": "psi", "gauge": uid(61)},
         "residual": {"value": "54", "unit": "psi", "gauge": uid(61)},
         "static_after": {"value": "72", "unit": "psi", "gauge": uid(61)},
-        "return_seconds": 12,
+        "return_seconds": {"seconds": 12, "how": "stop clock"},
+        "fully_open": True,
+        "took_full_flow": True,
         "pump_state": "none",
         "valves": [{"id": f"v{number}", "found": "open", "left": "open"} for number in (3, 4, 5)],
     }
