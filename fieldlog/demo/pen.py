@@ -10,7 +10,6 @@ from typing import Any
 import msgspec
 
 from fieldlog.canonical import sha256_hex
-from fieldlog.demo.plan import SitePlan
 from fieldlog.procedures.compose import compose
 from fieldlog.records.entries import Arrival
 
@@ -53,8 +52,3 @@ class Pen:
         """Return what was written since the last time."""
         arrivals, self.arrivals = self.arrivals, []
         return arrivals
-
-
-def author_of(site: SitePlan, on: date) -> str:
-    """Return which technician went: two take turns."""
-    return "technician-a" if (on.year + len(site.key)) % 2 == 0 else "technician-b"

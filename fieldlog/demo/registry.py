@@ -2,14 +2,16 @@
 
 from __future__ import annotations
 
+from collections.abc import Iterator
 from datetime import date
 
 import msgspec
 
-from fieldlog.demo import scenario
+from fieldlog.demo import noted, scenario
 from fieldlog.demo.pen import Pen, uid_of
-from fieldlog.demo.plan import SitePlan, SupplyPlan, SystemPlan
+from fieldlog.demo.plan import BASE_FT, GAUGE_FT, OUTLET_FT, DemandPlan, GaugePlan, SitePlan, SupplyPlan, SystemPlan
 from fieldlog.demo.scenario import ago
+from fieldlog.demo.simulator import left_at
 from fieldlog.procedures.design_record import Demand, DesignRecord, DesignSupply
 from fieldlog.procedures.gauge import Gauge
 from fieldlog.procedures.person import Person
@@ -18,8 +20,12 @@ from fieldlog.procedures.site import Site
 from fieldlog.procedures.supply import Supply, SupplyPoint
 from fieldlog.procedures.system import Drain, FeedPart, LossPoint, System, SystemValve
 from fieldlog.rules import loader
-from fieldlog.units import Diameter, Discharge, Flow, Length, Pressure, SiteUnits
+from fieldlog.units import Diameter, Discharge, Length, Pressure, SiteUnits
 
+TEST_GAUGE = "test-gauge"
+_DESIGN_GPM = 1200
+_FEED_FT = 90
+_LOSSES = ((300, 4), (600, 5), (1600, 12))  # gpm, psi: of an invented check assembly
 _VALVES = (
     SystemValve(id="V1", name="Street valve", place="at the boundary"),
     SystemValve(id="V2", name="Riser control valve", place="at the riser"),
@@ -27,128 +33,160 @@ _VALVES = (
 
 
 def write_people(pen: Pen, on: date) -> None:
-    """Write the people of the organisation and its clients."""
+    """Write the people of the organisation and its clients, and the organisation's test gauge."""
     for key, name, _, licence in scenario.PEOPLE:
         pen.write("person", key, Person(name=name, licence=licence), on)
+    body = Gauge(
+        name="T-1", of="organisation", range=Pressure(value="200", unit="psi"),
+        division=Pressure(value="0.5", unit="psi"), grade="2A", certificate="DEMO-C1", certificate_on=on,
+    )  # fmt: skip
+    pen.write("gauge", TEST_GAUGE, body, on)
 
 
 def write_site(pen: Pen, site: SitePlan, as_of: date) -> None:
-    """Write a site with all that is on record about it before its first test."""
-    on = ago(as_of, 10.2)
-    units = SiteUnits(pressure=site.pressure, flow=site.flow, length=site.length)  # type: ignore[arg-type]
-    body = Site(
-        name=site.name, address=site.address, owner=f"Owner of {site.name}", zone="Etc/UTC", units=units,
-        height_mark="floor of the valve room",
-    )  # fmt: skip
-    pen.write("site", site.key, body, on)
+    """Write a site with all that is on record about it before its first test, and what was altered since."""
+    on = _first_day(as_of)
     place = {"site": uid_of(site.key)}
+    pen.write("site", site.key, _site(site), on)
     for supply in site.supplies:
-        pen.write("supply", supply.key, _supply(supply), on, **place)
+        pen.write("supply", supply.key, _supply(supply, site.units), on, **place)
     for system in site.systems:
-        pen.write("system", system.key, _system(system, site), on, **place)
         here = place | {"system": uid_of(system.key)}
-        pen.write("gauge", f"{system.key}/gauge", _gauge(system, as_of), on, **here)
+        pen.write("system", system.key, _system(system, site), on, **place)
+        pen.write("gauge", system.gauge_key(system.gauge), _gauge(system.gauge, site, on), on, **here)
         if system.demand is not None:
-            pen.write("design_record", f"{system.key}/design", _design(system, as_of), on, **here)
+            design = _design(system.demand, site.supply_of(system), site.units, on)
+            pen.write("design_record", f"{system.key}/design", design, on, **here)
+        _write_alterations(pen, site, system)
     if site.catalogue is not None:
-        pen.write("rule_profile", f"{site.key}/profile", _profile(site.catalogue, as_of), on, **place)
+        pen.write("rule_profile", f"{site.key}/profile", _profile(site.catalogue, on), on, **place)
 
 
-def _supply(plan: SupplyPlan) -> Supply:
-    points = tuple(SupplyPoint(flow=_gpm(flow), pressure=_psi(pressure)) for flow, pressure in plan.pump_points)
+def _write_alterations(pen: Pen, site: SitePlan, system: SystemPlan) -> None:
+    place, gauge = {"site": uid_of(site.key)}, system.new_gauge
+    if gauge is not None and gauge.since is not None:
+        body = msgspec.structs.replace(
+            _gauge(gauge, site, gauge.since), replaces=uid_of(system.gauge_key(system.gauge))
+        )
+        here = place | {"system": uid_of(system.key)}
+        pen.write("gauge", system.gauge_key(gauge), body, gauge.since, author="technician-a", **here)
+    if system.drain_rebuilt_on is not None:
+        pen.write(
+            "system", f"{system.key}/new-drain", _with_new_drain(system, site, system.drain_rebuilt_on),
+            system.drain_rebuilt_on, author="office-a", **place, subject=uid_of(system.key),
+            based_on=uid_of(system.key), reason="main drain rebuilt to a new sump",
+        )  # fmt: skip
+
+
+def _first_day(as_of: date) -> date:
+    return ago(as_of, 10.8)
+
+
+def _site(plan: SitePlan) -> Site:
+    return Site(
+        name=plan.name,
+        address=plan.address,
+        owner=f"Owner of {plan.name}",
+        zone="Etc/UTC",
+        units=plan.units,
+        height_mark="floor of the valve room",
+    )
+
+
+def _supply(plan: SupplyPlan, units: SiteUnits) -> Supply:
     static, residual = plan.set_points_psi or (None, None)
+    level_m = plan.truth.full_tank_m
     return Supply(
         name=plan.name,
-        kind=plan.kind,  # type: ignore[arg-type]
-        pressure_reducing_valve="sole feed" if plan.reducing_valve else "none",
-        prv_static=None if static is None else _psi(static),
-        prv_residual=None if residual is None else _psi(residual),
-        tank_level_reference=Length(value="3", unit="m") if plan.kind == "gravity_tank" else None,
-        points=points,
+        kind=plan.kind,
+        backflow_preventer="sole feed" if plan.has_backflow_preventer else "none",
+        pressure_reducing_valve="none" if plan.set_points_psi is None else "sole feed",
+        prv_static=None if static is None else noted.pressure(static, units),
+        prv_residual=None if residual is None else noted.pressure(residual, units),
+        tank_level_reference=None if level_m is None else Length(value=str(level_m), unit="m"),
+        points=tuple(
+            SupplyPoint(flow=noted.flow(gpm, units), pressure=noted.pressure(psi, units))
+            for gpm, psi in plan.pump_points
+        ),
     )
 
 
 def _system(plan: SystemPlan, site: SitePlan) -> System:
     pipe = FeedPart(
-        length=Length(value=str(plan.feed_ft), unit="ft"), inside_diameter=Diameter(value="6.065", unit="in"), c=120,
+        length=noted.height(_FEED_FT, site.units), inside_diameter=Diameter(value="6.065", unit="in"), c=120,
         nominal="6", fittings={"90 standard elbow": 2, "gate valve": 2},
     )  # fmt: skip
-    losses = tuple(LossPoint(flow=_gpm(flow), loss=_psi(loss)) for flow, loss in ((300, 4), (600, 5), (1600, 12)))
+    device = FeedPart(of="check assembly", stated_loss=tuple(_listed_losses(site.units)))
     return System(
         name=plan.name,
-        type=plan.type,  # type: ignore[arg-type]
+        type=plan.type,
         supply=uid_of(plan.supply),
         riser="valve room",
-        base_elevation=Length(value="1", unit="ft"),
+        base_elevation=noted.height(BASE_FT, site.units),
         drain=Drain(
             id="main drain", size=Diameter(value="2", unit="in"), outlet="outside wall",
-            outlet_elevation=Length(value="2", unit="ft"),
+            outlet_elevation=noted.height(OUTLET_FT, site.units),
         ),
-        feed=(pipe, FeedPart(of="check assembly", stated_loss=losses)),
+        feed=(pipe, device),
         hose_point="street",
         valves=_VALVES,
         alarm="pressure switch",
         heated=plan.type == "wet",
         air_supervised=plan.type in {"dry", "preaction"} or None,
-        header=f"{site.key} header" if len(site.systems) > 3 else None,
     )  # fmt: skip
 
 
-def _gauge(plan: SystemPlan, as_of: date) -> Gauge:
-    gauge = plan.gauge
+def _listed_losses(units: SiteUnits) -> Iterator[LossPoint]:
+    for gpm, psi in _LOSSES:
+        yield LossPoint(flow=noted.flow(gpm, units), loss=noted.pressure(psi, units))
+
+
+def _with_new_drain(plan: SystemPlan, site: SitePlan, on: date) -> System:
+    k = noted.decimal_text(plan.truth.drain_k_on(on), "0.5")
+    drain = Drain(
+        id="main drain", size=Diameter(value="2", unit="in"), outlet="new sump, longer pipe",
+        outlet_elevation=noted.height(OUTLET_FT, site.units), k=Discharge(value=k, unit="gpm/psi^0.5"),
+    )  # fmt: skip
+    return msgspec.structs.replace(_system(plan, site), drain=drain, drain_changed_on=on)
+
+
+def _gauge(plan: GaugePlan, site: SitePlan, on: date) -> Gauge:
     return Gauge(
-        name=gauge.name,
+        name=plan.name,
         of="system",
         side="supply",
-        taps=gauge.taps,  # type: ignore[arg-type]
-        behind=gauge.behind,  # type: ignore[arg-type]
-        range=Pressure(value=gauge.range_value, unit=gauge.unit),  # type: ignore[arg-type]
-        division=Pressure(value=gauge.division, unit=gauge.unit),  # type: ignore[arg-type]
-        grade=gauge.grade,  # type: ignore[arg-type]
-        elevation=Length(value="4", unit="ft"),
-        installed_on=ago(as_of, 10.2),
+        taps="riser",
+        behind=plan.behind,
+        range=plan.full_scale,
+        division=plan.division,
+        grade="B",
+        elevation=noted.height(GAUGE_FT, site.units),
+        installed_on=on,
     )
 
 
-def _design(plan: SystemPlan, as_of: date) -> DesignRecord:
-    demand = plan.demand
-    if demand is None:
-        raise ValueError(f"{plan.key} has no demand on record")
+def _design(demand: DemandPlan, supply: SupplyPlan, units: SiteUnits, on: date) -> DesignRecord:
+    static_psi = supply.truth.static_psi
+    residual_psi = left_at(static_psi, supply.truth.resistance, _DESIGN_GPM)
     return DesignRecord(
-        demand=Demand(flow=_gpm(demand.flow_gpm), pressure=_psi(demand.pressure_psi)),
+        demand=Demand(flow=noted.flow(demand.flow_gpm, units), pressure=noted.pressure(demand.pressure_psi, units)),
         includes_inside_hose="yes",
-        hose_outside=_gpm(demand.hose_outside_gpm),
+        hose_outside=noted.flow(demand.hose_outside_gpm, units),
         hose_point="street",
-        supply=DesignSupply(static=_psi(80), residual=_psi(60), flow=_gpm(1200)),
+        supply=DesignSupply(
+            static=noted.pressure(static_psi, units), residual=noted.pressure(residual_psi, units),
+            flow=noted.flow(_DESIGN_GPM, units),
+        ),
         by="Designer A",
-        made_on=ago(as_of, 10.2),
+        made_on=on,
         read_from="information sign",
-    )
+    )  # fmt: skip
 
 
-def _profile(catalogue_id: str, as_of: date) -> RuleProfileBody:
+def _profile(catalogue_id: str, on: date) -> RuleProfileBody:
     catalogue = loader.load(catalogue_id)
-    on = ago(as_of, 10.2)
     adoption = loader.Adoption(
         approved_by=scenario.ENGINEER, approved_on=on, in_force_from=on, judged_on="on_the_day",
         approved_rows=tuple(catalogue.row_ids()),
     )  # fmt: skip
     return msgspec.convert(msgspec.to_builtins(loader.resolve(catalogue, adoption)), RuleProfileBody)
-
-
-def altered_drain(plan: SystemPlan, site: SitePlan, on: date) -> System:
-    """Return the system with its drain as rebuilt on a day."""
-    body = _system(plan, site)
-    drain = Drain(
-        id="main drain", size=Diameter(value="2", unit="in"), outlet="new sump, longer pipe",
-        outlet_elevation=Length(value="1", unit="ft"), k=Discharge(value="32", unit="gpm/psi^0.5"),
-    )  # fmt: skip
-    return msgspec.structs.replace(body, drain=drain, drain_changed_on=on)
-
-
-def _psi(value: int) -> Pressure:
-    return Pressure(value=str(value), unit="psi")
-
-
-def _gpm(value: int) -> Flow:
-    return Flow(value=str(value), unit="gpm")

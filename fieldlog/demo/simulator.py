@@ -1,11 +1,12 @@
 """What gauges would have shown at an invented supply: seeded, pure, in psi and gpm.
 
-A supply has a static that moves with season, day, decline and steps; a system adds the resistance of its own feed and
-a drain that is an orifice; a gauge adds its bias, its division and the eye of the reader.
+A supply has a static that moves with season, day, tank level, decline and steps; a system adds the resistance of its
+own feed and a drain that is an orifice; a gauge adds its height, its bias, its division and the eye of the reader.
 """
 
 from __future__ import annotations
 
+import hashlib
 import math
 from dataclasses import dataclass
 from datetime import date
@@ -13,7 +14,17 @@ from datetime import date
 import numpy as np
 from scipy.optimize import brentq
 
-from fieldlog.hydraulics.formulas import FLOW_EXPONENT
+from fieldlog.hydraulics.formulas import FLOW_EXPONENT, elevation_pressure
+
+_DAYS_OF_YEAR = 365.25
+_HIGHEST_DAY = 45  # mid February; the lowest static of the year comes half a year later
+_FT_IN_M = 1 / 0.3048
+
+
+def dice(*words: object) -> np.random.Generator:
+    """Return the noise that goes by these words: the same on every run, whatever else is drawn."""
+    named = "/".join(str(word) for word in words)
+    return np.random.default_rng(int.from_bytes(hashlib.sha256(named.encode()).digest()[:8], "big"))
 
 
 @dataclass(frozen=True, slots=True)
@@ -25,11 +36,23 @@ class Change:
     is_yearly: bool = False
     until: date | None = None
 
-    def at(self, day: date) -> float:
-        """Return how much of it there is on a day."""
+    def at(self, day: date) -> float | None:
+        """Return how much of it there is on a day; None before and after it."""
         if day < self.on or (self.until is not None and day >= self.until):
-            return 0.0
-        return self.amount * (day - self.on).days / 365.25 if self.is_yearly else self.amount
+            return None
+        return self.amount * (day - self.on).days / _DAYS_OF_YEAR if self.is_yearly else self.amount
+
+
+def _found(changes: tuple[Change, ...], day: date) -> list[float]:
+    return [amount for change in changes if (amount := change.at(day)) is not None]
+
+
+@dataclass(frozen=True, slots=True)
+class SupplyState:
+    """A supply on one day: static at the base of riser, and the level of its tank if it has one."""
+
+    static_psi: float
+    tank_level_m: float | None = None
 
 
 @dataclass(frozen=True, slots=True)
@@ -38,79 +61,81 @@ class TrueSupply:
 
     static_psi: float
     resistance: float  # psi/gpm^1.85
-    season_psi: float = 1.5
-    day_psi: float = 0.7
+    season_psi: float = 2.0
+    day_psi: float = 2.5  # 1 sigma from day to day
     changes: tuple[Change, ...] = ()
+    full_tank_m: float | None = None  # the static holds at this level; a tank stands up to 0.6 m below it
 
-    def static_on(self, day: date, noise: np.random.Generator) -> float:
-        """Return the static of a day, in psi; lowest in August."""
-        season = self.season_psi * math.cos(2 * math.pi * (day.timetuple().tm_yday - 45) / 365.25)
-        moved = sum(change.at(day) for change in self.changes)
-        return self.static_psi + season + moved + float(noise.normal(0.0, self.day_psi))
+    def on(self, day: date, noise: np.random.Generator) -> SupplyState:
+        """Return the supply as it is on a day."""
+        season_psi = self.season_psi * math.cos(2 * math.pi * (day.timetuple().tm_yday - _HIGHEST_DAY) / _DAYS_OF_YEAR)
+        static_psi = self.static_psi + season_psi + sum(_found(self.changes, day)) + noise.normal(0.0, self.day_psi)
+        if self.full_tank_m is None:
+            return SupplyState(float(static_psi))
+        level_m = round(self.full_tank_m - float(noise.uniform(0.0, 0.6)), 1)
+        return SupplyState(float(static_psi + elevation_pressure((level_m - self.full_tank_m) * _FT_IN_M)), level_m)
 
 
 @dataclass(frozen=True, slots=True)
 class TrueSystem:
-    """A system's own feed and drain; each change multiplies the feed's resistance by its amount."""
+    """A system's own feed and drain; a restriction multiplies the feed's resistance, an alteration the drain's K."""
 
     feed: float  # psi/gpm^1.85
-    drain_k: float
+    drain_k: float  # gpm/psi^0.5
     restrictions: tuple[Change, ...] = ()
-    drain_changes: tuple[Change, ...] = ()  # each multiplies the drain's K
+    alterations: tuple[Change, ...] = ()
 
-    def resistance_on(self, day: date) -> float:
-        """Return the resistance of the feed on a day."""
-        factors = [change.at(day) for change in self.restrictions]
-        return self.feed * math.prod(factor for factor in factors if factor > 0)
+    def feed_on(self, day: date) -> float:
+        """Return the resistance of the feed on a day, in psi/gpm^1.85."""
+        return self.feed * math.prod(_found(self.restrictions, day))
 
     def drain_k_on(self, day: date) -> float:
-        """Return the K of the drain on a day."""
-        factors = [change.at(day) for change in self.drain_changes]
-        return self.drain_k * math.prod(factor for factor in factors if factor > 0)
+        """Return the K of the drain on a day, in gpm/psi^0.5."""
+        return self.drain_k * math.prod(_found(self.alterations, day))
 
 
 @dataclass(frozen=True, slots=True)
 class TrueGauge:
-    """A gauge: the psi of its smallest division, its bias and what happened to it."""
+    """A gauge as it is: its bias, what happened to it, and how well it is read (1 sigma, psi)."""
 
-    division_psi: float
     bias_psi: float = 0.0
-    reader_psi: float = 0.3
     shifts: tuple[Change, ...] = ()
+    reader_psi: float = 0.4
 
     def shows(self, pressure_psi: float, day: date, noise: np.random.Generator) -> float:
-        """Return what a person notes, in psi: a multiple of the division."""
-        moved = self.bias_psi + sum(shift.at(day) for shift in self.shifts)
-        shown = pressure_psi + moved + float(noise.normal(0.0, self.reader_psi))
-        return max(round(shown / self.division_psi), 0) * self.division_psi
+        """Return where the eye puts the needle, in psi, before it is rounded to a division."""
+        moved_psi = self.bias_psi + sum(_found(self.shifts, day))
+        return max(pressure_psi + moved_psi + float(noise.normal(0.0, self.reader_psi)), 0.0)
 
 
 @dataclass(frozen=True, slots=True)
 class Flowing:
-    """What is so while a drain flows."""
+    """What is so at the base of riser while a drain flows."""
 
     flow_gpm: float
     residual_psi: float
 
 
-def drain_open(static_psi: float, resistance: float, drain_k: float) -> Flowing:
-    """Return flow and residual of a fully open drain: where supply curve and orifice meet."""
+def drain_open(static_psi: float, resistance: float, drain_k: float, outlet_rise_ft: float = 0.0) -> Flowing:
+    """Return flow and residual of a fully open drain: where the supply's curve and the orifice's meet.
 
-    def missing_psi(flow_gpm: float) -> float:
-        return float(static_psi - resistance * flow_gpm**FLOW_EXPONENT - (flow_gpm / drain_k) ** 2)
+    The outlet stands `outlet_rise_ft` above the base of riser, where static and residual hold.
+    """
+    rise_psi = float(elevation_pressure(outlet_rise_ft))
 
-    most_gpm = drain_k * math.sqrt(static_psi)
-    flow_gpm = float(brentq(missing_psi, 0.0, most_gpm, xtol=1e-9))
-    return Flowing(flow_gpm, (flow_gpm / drain_k) ** 2)
+    def left_psi(flow_gpm: float) -> float:
+        return float(static_psi - rise_psi - resistance * flow_gpm**FLOW_EXPONENT - (flow_gpm / drain_k) ** 2)
+
+    most_gpm = drain_k * math.sqrt(static_psi - rise_psi)
+    flow_gpm = float(brentq(left_psi, 0.0, most_gpm, xtol=1e-9))
+    return Flowing(flow_gpm, (flow_gpm / drain_k) ** 2 + rise_psi)
 
 
 def resistance_of(loss_psi: float, flow_gpm: float) -> float:
-    """Return the resistance that loses so much at a flow."""
+    """Return the resistance that loses so much at a flow, in psi/gpm^1.85."""
     return float(loss_psi / flow_gpm**FLOW_EXPONENT)
 
 
-def decimal_text(value: float, step: float) -> str:
-    """Return a value in steps of a division as decimal text with the division's decimals."""
-    decimals: int = max(-math.floor(math.log10(step) + 1e-9), 0)
-    text: str = f"{round(value / step) * step:.{decimals}f}"
-    return text
+def left_at(static_psi: float, resistance: float, flow_gpm: float) -> float:
+    """Return the pressure that is left at a flow, in psi."""
+    return float(static_psi - resistance * flow_gpm**FLOW_EXPONENT)
