@@ -19,7 +19,7 @@ from fieldlog.procedures.bodies import decode_body
 from fieldlog.procedures.catalogue import PROCEDURES
 from fieldlog.procedures.compose import compose, import_uid
 from fieldlog.procedures.main_drain_test import MainDrainTest
-from fieldlog.procedures.questions import Earlier, drain_test_questions
+from fieldlog.procedures.questions import Earlier, questions
 from fieldlog.units import Pressure, SiteUnits
 from fieldlog.wording.quantities import day
 from fieldlog.wording.questions import question_sentence
@@ -112,7 +112,7 @@ def _notes(body: msgspec.Struct, repeat: int) -> tuple[str, ...]:
     if repeat > 1:
         notes.append(f"equal to {repeat - 1} row{'s' if repeat > 2 else ''} above; kept as a test of its own")
     if isinstance(body, MainDrainTest) and _may_be_odd(body):
-        notes += [question_sentence(one, _ANY_UNITS) for one in drain_test_questions(body, _NOTHING_EARLIER)]
+        notes += [question_sentence(one, _ANY_UNITS) for one in questions(body, _NOTHING_EARLIER)]
     return tuple(notes)
 
 
