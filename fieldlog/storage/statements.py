@@ -131,7 +131,7 @@ def _row(supply: str, site: str, statement: SystemStatement) -> tuple[str | int 
         statement.profile or "",
         supply,
         site,
-        statement.statement.rank,
+        statement.worst.rank,
         statement.version,
         statement.through_number,
         statement.valid_until.isoformat() if statement.valid_until else None,
