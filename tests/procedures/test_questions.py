@@ -52,7 +52,8 @@ def test_nothing_is_asked_about_an_ordinary_entry(kind: str) -> None:
 @pytest.mark.parametrize(
     ("kind", "change", "field", "code"),
     [
-        ("main_drain_test", {"static_before": bar("72"), "residual": bar("64")}, "residual", "unit_slip"),  # psi typed as bar: 14.5 times
+        ("main_drain_test", {"static_before": bar("72"), "residual": bar("64")}, "residual",
+         "unit_slip"),  # psi typed as bar: 14.5 times
         ("main_drain_test", {"residual": psi("4.4")}, "residual", "unit_slip"),  # bar typed as psi
         ("main_drain_test", {"residual": psi("440"), "static_before": psi("490")}, "residual", "unit_slip"),  # kPa: 6.9
         ("main_drain_test", {"residual": psi("220", gauge=examples.GAUGE), "static_before": psi("230")}, "residual",
