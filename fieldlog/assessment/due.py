@@ -69,9 +69,9 @@ def due_lists(history: SupplyHistory, as_of: date) -> tuple[DueList, ...]:
 
     Parameters
     ----------
-    history
+    history : SupplyHistory
         The supply with its systems, gauges, tests and profiles.
-    as_of
+    as_of : date
         The day asked about; entries of later days are left out.
 
     Returns

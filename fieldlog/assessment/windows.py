@@ -47,13 +47,13 @@ def next_window(frequency: Frequency, last: date | None, baseline: date | None, 
 
     Parameters
     ----------
-    frequency
+    frequency : Frequency
         How often, counted from what.
-    last
+    last : date | None
         The day it was last done.
-    baseline
+    baseline : date | None
         The day the part was installed: counted from where nothing was done, and always by a frequency so anchored.
-    as_of
+    as_of : date
         The day asked about.
 
     Returns

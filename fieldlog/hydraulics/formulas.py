@@ -45,18 +45,18 @@ def friction_loss(flow_gpm: Amount, c: Amount, diameter_in: Amount, law: Frictio
 
     Parameters
     ----------
-    flow_gpm : float or array
+    flow_gpm : Amount
         Flow, not negative [gpm].
-    c : float or array
+    c : Amount
         Hazen-Williams C-factor, above 0 [-].
-    diameter_in : float or array
+    diameter_in : Amount
         Inside diameter, above 0 [in].
     law : FrictionLaw
         Constants of the form used; the installation standard's by default [-].
 
     Returns
     -------
-    float or array
+    Amount
         Friction loss [psi/ft].
 
     Raises
@@ -90,14 +90,14 @@ def sprinkler_flow(k: Amount, pressure_psi: Amount) -> Amount:
 
     Parameters
     ----------
-    k : float or array
+    k : Amount
         K-factor, above 0 [gpm/psi^0.5].
-    pressure_psi : float or array
+    pressure_psi : Amount
         Pressure at the orifice, not negative [psi].
 
     Returns
     -------
-    float or array
+    Amount
         Flow [gpm].
 
     Raises
@@ -124,14 +124,14 @@ def sprinkler_pressure(k: Amount, flow_gpm: Amount) -> Amount:
 
     Parameters
     ----------
-    k : float or array
+    k : Amount
         K-factor, above 0 [gpm/psi^0.5].
-    flow_gpm : float or array
+    flow_gpm : Amount
         Flow, not negative [gpm].
 
     Returns
     -------
-    float or array
+    Amount
         Pressure at the orifice [psi].
 
     Raises
@@ -158,18 +158,18 @@ def pitot_flow(coefficient: Amount, diameter_in: Amount, pitot_psi: Amount, outl
 
     Parameters
     ----------
-    coefficient : float or array
+    coefficient : Amount
         Coefficient of the outlet: 0.90 smooth and rounded, 0.80 square and sharp, 0.70 projecting [-].
-    diameter_in : float or array
+    diameter_in : Amount
         Inside diameter of the outlet, above 0 [in].
-    pitot_psi : float or array
+    pitot_psi : Amount
         Pitot reading, not negative [psi].
-    outlet_factor : float or array
+    outlet_factor : Amount
         Further factor of a large (pumper) outlet; 1 for others [-].
 
     Returns
     -------
-    float or array
+    Amount
         Flow [gpm].
 
     Raises
@@ -200,12 +200,12 @@ def pumper_outlet_factor(pitot_psi: Amount) -> Amount:
 
     Parameters
     ----------
-    pitot_psi : float or array
+    pitot_psi : Amount
         Pitot reading, not negative [psi].
 
     Returns
     -------
-    float or array
+    Amount
         Factor: 0.97 at 2 psi and below, 0.83 at 7 psi and above, linear between [-].
 
     Raises
@@ -230,12 +230,12 @@ def elevation_pressure(height_ft: Amount) -> Amount:
 
     Parameters
     ----------
-    height_ft : float or array
+    height_ft : Amount
         Height, negative downward [ft].
 
     Returns
     -------
-    float or array
+    Amount
         Pressure [psi].
 
     Raises
@@ -260,14 +260,14 @@ def velocity(flow_gpm: Amount, diameter_in: Amount) -> Amount:
 
     Parameters
     ----------
-    flow_gpm : float or array
+    flow_gpm : Amount
         Flow, not negative [gpm].
-    diameter_in : float or array
+    diameter_in : Amount
         Inside diameter, above 0 [in].
 
     Returns
     -------
-    float or array
+    Amount
         Velocity [ft/s].
 
     Raises
@@ -292,14 +292,14 @@ def velocity_pressure(flow_gpm: Amount, diameter_in: Amount) -> Amount:
 
     Parameters
     ----------
-    flow_gpm : float or array
+    flow_gpm : Amount
         Flow, not negative [gpm].
-    diameter_in : float or array
+    diameter_in : Amount
         Inside diameter, above 0 [in].
 
     Returns
     -------
-    float or array
+    Amount
         Velocity pressure [psi].
 
     Raises
@@ -324,14 +324,14 @@ def density_flow(density_gpm_per_ft2: Amount, area_ft2: Amount) -> Amount:
 
     Parameters
     ----------
-    density_gpm_per_ft2 : float or array
+    density_gpm_per_ft2 : Amount
         Density, not negative [gpm/ft2].
-    area_ft2 : float or array
+    area_ft2 : Amount
         Area, not negative [ft2].
 
     Returns
     -------
-    float or array
+    Amount
         Flow [gpm].
 
     Raises
@@ -358,12 +358,12 @@ def c_multiplier(c: Amount) -> Amount:
 
     Parameters
     ----------
-    c : float or array
+    c : Amount
         Hazen-Williams C-factor, above 0 [-].
 
     Returns
     -------
-    float or array
+    Amount
         Multiplier [-].
 
     Raises
@@ -390,14 +390,14 @@ def diameter_multiplier(actual_in: Amount, schedule_40_in: Amount) -> Amount:
 
     Parameters
     ----------
-    actual_in : float or array
+    actual_in : Amount
         Actual inside diameter, above 0 [in].
-    schedule_40_in : float or array
+    schedule_40_in : Amount
         Inside diameter of Schedule 40 of that nominal size, above 0 [in].
 
     Returns
     -------
-    float or array
+    Amount
         Multiplier [-].
 
     Raises
@@ -424,16 +424,16 @@ def drain_index(static_psi: Amount, residual_psi: Amount, outlet_residual_psi: A
 
     Parameters
     ----------
-    static_psi : float or array
+    static_psi : Amount
         Static [psi].
-    residual_psi : float or array
+    residual_psi : Amount
         Residual at full flow [psi].
-    outlet_residual_psi : float or array, optional
+    outlet_residual_psi : Amount | None
         Residual corrected to the drain's outlet, above 0; the residual itself where its height is unknown [psi].
 
     Returns
     -------
-    float or array
+    Amount
         Drain index, negative where the residual is above the static [psi^0.075].
 
     Raises
@@ -507,14 +507,14 @@ def trip_pressure(water_psi: Amount, ratio: Amount) -> Amount:
 
     Parameters
     ----------
-    water_psi : float or array
+    water_psi : Amount
         Highest water pressure below the valve, not negative [psi].
-    ratio : float or array
+    ratio : Amount
         Water to air ratio of the valve, above 0 [-].
 
     Returns
     -------
-    float or array
+    Amount
         Air pressure at trip [psi].
 
     Raises

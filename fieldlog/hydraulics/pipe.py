@@ -194,7 +194,7 @@ def nominal_k(k: float) -> float | None:
 
     Returns
     -------
-    float or None
+    float | None
         Nominal K-factor; None where it lies in no range [gpm/psi^0.5].
 
     References

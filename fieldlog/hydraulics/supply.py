@@ -72,6 +72,20 @@ class SupplyCurve:
     def from_flow_test(cls, static_psi: float, residual_psi: float, flow_gpm: float) -> SupplyCurve:
         """Return the curve through one flow test.
 
+        Parameters
+        ----------
+        static_psi : float
+            Static [psi].
+        residual_psi : float
+            Residual, below the static [psi].
+        flow_gpm : float
+            Flow measured, above 0 [gpm].
+
+        Returns
+        -------
+        SupplyCurve
+            Curve at the gauge, all of it in the first segment [psi, gpm].
+
         Raises
         ------
         OutOfRangeError
@@ -84,6 +98,18 @@ class SupplyCurve:
         """Return the curve through the static that is nearest to several flow-test points (gpm, residual psi).
 
         Least squares of the drop on the flow to the 1.85.
+
+        Parameters
+        ----------
+        static_psi : float
+            Static [psi].
+        points : Sequence[tuple[float, float]]
+            Flow, above 0, and residual, below the static, of each point [gpm, psi].
+
+        Returns
+        -------
+        SupplyCurve
+            Curve at the gauge, all of it in the first segment [psi, gpm].
 
         Raises
         ------
