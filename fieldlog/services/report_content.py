@@ -32,7 +32,7 @@ from fieldlog.reports.content import (
 from fieldlog.services import judging
 from fieldlog.services.report_pictures import pictures
 from fieldlog.services.report_scope import Scope
-from fieldlog.services.report_tables import comparison_table, every_test_table
+from fieldlog.services.report_tables import comparison_table, due_table, every_test_table
 from fieldlog.wording import notices
 from fieldlog.wording.quantities import Reader, day
 from fieldlog.wording.reasons import reason_with_entries
@@ -215,6 +215,7 @@ def _system_section(scope: Scope, history: SupplyHistory, system: System, said: 
         *tests,
         _particulars(scope, history, system),
         *every_test_table(system, said, scope.units),
+        *due_table(history, system, said.as_of, scope.name_of),
     ]
     return Section(system.name, tuple(blocks), f"{system.type} system on {history.supply.name}")
 

@@ -2,13 +2,16 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Callable, Iterator
+from datetime import date
 
+from fieldlog.assessment.due import DueItem, due_lists
 from fieldlog.hydraulics import formulas
-from fieldlog.records.history import DrainTest, Reading, System
+from fieldlog.records.history import DrainTest, Reading, SupplyHistory, System
 from fieldlog.records.statement import SystemStatement, TenPercent
 from fieldlog.reports.content import Column, Table
 from fieldlog.units import SiteUnits
+from fieldlog.wording.notices import UNAPPROVED_RULE
 from fieldlog.wording.quantities import day, percent, rounded
 
 _NOTHING = "–"
@@ -91,3 +94,26 @@ def _fall(one: TenPercent) -> str:
     if one.reduction < 0:
         return f"{percent(-one.reduction)} above"
     return f"{percent(one.reduction, reaches=one.flagged)} below" + (" · flagged" if one.flagged else "")
+
+
+def due_table(history: SupplyHistory, system: System, as_of: date, name_of: Callable[[str], str]) -> Iterator[Table]:
+    """Return what is due at a system by each rule profile in force; a row nobody approved is called so."""
+    for one in due_lists(history, as_of):
+        items = [item for item in one.items if system.uid in item.systems]
+        if items:
+            title = f"What is due by {one.standard}, edition {one.edition}"
+            columns = (Column("item"), Column("state"), Column("due"), Column("last done"), Column("asked by"))
+            yield Table(title, columns, tuple(_due_row(item, name_of) for item in items))
+
+
+def _due_row(item: DueItem, name_of: Callable[[str], str]) -> tuple[str, ...]:
+    part = item.valve or (name_of(item.gauge) if item.gauge else "")
+    dates = (item.due, item.last_done)
+    due, last = (_NOTHING if when is None else day(when) for when in dates)
+    return (
+        f"{item.item} ({part})" if part else item.item,
+        item.state + (f", if {', '.join(item.unstated)}".replace("_", " ") if item.unstated else ""),
+        due,
+        last + (f" #{item.last_entry}" if item.last_entry else ""),
+        item.clause or ("the approved profile" if item.required else UNAPPROVED_RULE),
+    )
