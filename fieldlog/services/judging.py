@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Callable, Iterable
 from datetime import date
 
+from fieldlog.assessment.due import profiles_in_force
 from fieldlog.assessment.judge import judge
 from fieldlog.procedures.catalogue import PROCEDURES
 from fieldlog.procedures.histories import histories
@@ -50,14 +51,9 @@ def site_histories(connection: Connection, site: str) -> tuple[SupplyHistory, ..
     return histories(in_force, entries.entries_of_site(connection, site))
 
 
-def profiles_in_force(history: SupplyHistory, on: date) -> tuple[RuleProfile, ...]:
-    """Return the rule profiles by which the site is judged on a day; several may be."""
-    return tuple(profile for profile in history.profiles if profile.is_in_force(on))
-
-
 def statements_on(history: SupplyHistory, as_of: date) -> tuple[SystemStatement, ...]:
     """Return a statement a system and profile; without a profile, one that says so."""
-    profiles: tuple[RuleProfile | None, ...] = profiles_in_force(history, as_of) or (None,)
+    profiles: tuple[RuleProfile | None, ...] = profiles_in_force(history.profiles, as_of) or (None,)
     version = program_version()
     return tuple(said for profile in profiles for said in judge(history, as_of, profile, version))
 

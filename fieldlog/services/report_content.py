@@ -7,6 +7,7 @@ from datetime import datetime
 from typing import Any
 
 from fieldlog.assessment.codes import ReasonCode
+from fieldlog.assessment.due import profiles_in_force
 from fieldlog.canonical import canonical_text
 from fieldlog.procedures.catalogue import PROCEDURES
 from fieldlog.procedures.histories import Typed
@@ -29,7 +30,6 @@ from fieldlog.reports.content import (
     TestRecord,
     VisitReport,
 )
-from fieldlog.services import judging
 from fieldlog.services.report_pictures import pictures
 from fieldlog.services.report_scope import Scope
 from fieldlog.services.report_tables import comparison_table, due_table, every_test_table
@@ -337,7 +337,7 @@ def _cautions(scope: Scope) -> Iterator[str]:
 
 def _standards(scope: Scope) -> Iterator[str]:
     profiles = {
-        profile.uid: profile for history in scope.histories for profile in judging.profiles_in_force(history, scope.on)
+        profile.uid: profile for history in scope.histories for profile in profiles_in_force(history.profiles, scope.on)
     }
     if not profiles:
         yield notices.STANDARD_NOT_RECORDED

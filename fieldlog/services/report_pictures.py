@@ -7,13 +7,13 @@ from datetime import date
 
 import numpy as np
 
+from fieldlog.assessment.due import profiles_in_force
 from fieldlog.assessment.measured_supply import Measured, demand_of, measured_supply
 from fieldlog.charts.history import ExpectedRange, HistoryChart, Reading, ReferenceLine, Series
 from fieldlog.charts.supply import Curve, FlowPoint, SupplyChart
 from fieldlog.records.history import DrainTest, SupplyHistory, System
 from fieldlog.records.statement import SystemStatement
 from fieldlog.reports.content import Picture
-from fieldlog.services import judging
 from fieldlog.units import SiteUnits, flow_in, pressure_in
 from fieldlog.wording.notices import ESTIMATE
 from fieldlog.wording.quantities import Reader, day
@@ -28,7 +28,7 @@ def pictures(history: SupplyHistory, system: System, said: SystemStatement, unit
 
 
 def _supply_picture(history: SupplyHistory, system: System, as_of: date, units: SiteUnits) -> Picture | None:
-    profiles = judging.profiles_in_force(history, as_of)
+    profiles = profiles_in_force(history.profiles, as_of)
     measured = measured_supply(history, system, profiles[0] if profiles else None, as_of)
     demand = demand_of(system)
     if measured.curve is None or demand is None:
