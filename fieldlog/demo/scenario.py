@@ -129,7 +129,7 @@ def _north_quay(as_of: date) -> SitePlan:
     main = TrueSupply(88.0, _losing(13.0), changes=(Change(ago(as_of, 3.2), -14.0),))
     yard = TrueSupply(70.0, _losing(11.0), season_psi=1.0, day_psi=1.0)
     rebuilt_on = ago(as_of, 2.1)
-    sump = TrueSystem(_losing(5.0), 40.0, alterations=(Change(rebuilt_on, 0.8),))
+    sump = TrueSystem(_losing(14.0), 40.0, alterations=(Change(rebuilt_on, 0.8),))
     return SitePlan(
         "north", "North Quay Warehouse", "3 Example Quay", _BAR, "european_insurers", 9,
         (
