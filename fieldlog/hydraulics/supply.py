@@ -27,6 +27,11 @@ class LossCurve:
 
     points: tuple[tuple[float, float], ...]
 
+    def __post_init__(self) -> None:
+        """Refuse no points, or one that is no number."""
+        if not (self.points and np.all(np.isfinite(self.points))):
+            raise OutOfRangeError(f"listed loss: {self.points}; give one point or more in finite numbers")
+
     def loss(self, flow_gpm: Amount) -> Amount:
         """Return the loss at a flow, in psi; not a number beyond the last point."""
         flows, losses = np.array(sorted({(0.0, 0.0), *self.points})).T
@@ -62,10 +67,11 @@ class SupplyCurve:
 
     def __post_init__(self) -> None:
         """Refuse what is no curve."""
-        if not (np.isfinite(self.static_psi) and self.a_source >= 0 and self.a_path >= 0):
+        are_finite = np.all(np.isfinite((self.static_psi, self.a_source, self.a_path)))
+        if not (are_finite and self.a_source >= 0 and self.a_path >= 0):
             raise OutOfRangeError(
                 f"supply curve: static {self.static_psi} psi, resistances {self.a_source} and {self.a_path}; "
-                "give a finite static and resistances that are not negative"
+                "give a finite static and finite resistances that are not negative"
             )
 
     @classmethod
@@ -117,10 +123,10 @@ class SupplyCurve:
             If there is no point, a residual is not below the static, or a flow is not above 0.
         """
         for flow_gpm, residual_psi in points:
-            if not (flow_gpm > 0 and residual_psi < static_psi):
+            if not (0 < flow_gpm < np.inf and -np.inf < residual_psi < static_psi):
                 raise OutOfRangeError(
                     f"flow test: residual {residual_psi} psi at {flow_gpm} gpm with static {static_psi} psi; "
-                    "the residual must be below the static and the flow above 0"
+                    "give a residual below the static and a flow above 0, all finite"
                 )
         if not points:
             raise OutOfRangeError("flow test: no point; give a residual at a measured flow")
@@ -131,8 +137,10 @@ class SupplyCurve:
     def available(self, flow_gpm: Amount, outside_hose_gpm: Amount) -> Amount:
         """Return the pressure at a system flow while hose draws upstream, in psi."""
         flow, hose = np.asarray(flow_gpm, dtype=float), np.asarray(outside_hose_gpm, dtype=float)
-        if not (np.all(flow >= 0) and np.all(hose >= 0)):
-            raise OutOfRangeError(f"flow: {flow_gpm} gpm and hose {outside_hose_gpm} gpm; give numbers not negative")
+        if not all(np.all((amount >= 0) & (amount < np.inf)) for amount in (flow, hose)):
+            raise OutOfRangeError(
+                f"flow: {flow_gpm} gpm and hose {outside_hose_gpm} gpm; give finite numbers that are not negative"
+            )
         pressure = self.static_psi - self.a_source * (flow + hose) ** FLOW_EXPONENT
         pressure = pressure - self.a_path * flow**FLOW_EXPONENT - sum(curve.loss(flow) for curve in self.losses)
         return _as_given(pressure)
@@ -146,11 +154,12 @@ class SupplyCurve:
 
         Not a number where a listed loss ends before that flow.
         """
+        pressure = _finite_pressure(pressure_psi)
         if not self.losses:
-            drop = np.maximum(self.static_psi - np.asarray(pressure_psi, dtype=float), 0.0)
+            drop = np.maximum(self.static_psi - pressure, 0.0)
             with np.errstate(divide="ignore", invalid="ignore"):
                 return _as_given((drop / (self.a_source + self.a_path)) ** _INVERSE)
-        return _as_given(np.vectorize(self._flow_with_losses, otypes=[float])(pressure_psi))
+        return _as_given(np.vectorize(self._flow_with_losses, otypes=[float])(pressure))
 
     def at_elevation(self, rise_ft: float) -> SupplyCurve:
         """Return the curve at a point higher by `rise_ft`: up lowers."""
@@ -180,10 +189,12 @@ class PointCurve:
     points: tuple[tuple[float, float], ...]
 
     def __post_init__(self) -> None:
-        """Refuse fewer than two points, or two at one flow."""
+        """Refuse fewer than two points, two at one flow, or one that is no number."""
         flows = [flow for flow, _ in self.points]
-        if len(flows) < 2 or len(set(flows)) < len(flows):
-            raise OutOfRangeError("stated points: give two or more, each at its own flow")
+        if len(flows) < 2 or len(set(flows)) < len(flows) or not np.all(np.isfinite(self.points)):
+            raise OutOfRangeError(
+                f"stated points: {self.points}; give two or more in finite numbers, each at its own flow"
+            )
 
     def pressure_at(self, flow_gpm: Amount) -> Amount:
         """Return the pressure at a flow, in psi; not a number (unproven) outside the stated flows."""
@@ -195,18 +206,27 @@ class PointCurve:
         return self.pressure_at(np.asarray(flow_gpm, dtype=float) + np.asarray(outside_hose_gpm, dtype=float))
 
     def flow_at(self, pressure_psi: Amount) -> Amount:
-        """Return the stated flow at which the pressure is left, in gpm; not a number where none is stated."""
-        flows, pressures = self._sorted()
-        order = np.argsort(pressures, kind="stable")
-        found = np.interp(
-            np.asarray(pressure_psi, dtype=float), pressures[order], flows[order], left=np.nan, right=np.nan
-        )
-        return _as_given(found)
+        """Return the flow at which the pressure is left, in gpm; not a number where none is stated.
+
+        The largest one: a pump's curve may rise before it falls.
+        """
+        return _as_given(np.vectorize(self._largest_flow, otypes=[float])(_finite_pressure(pressure_psi)))
 
     def at_elevation(self, rise_ft: float) -> PointCurve:
         """Return the curve at a point higher by `rise_ft`: up lowers."""
         lower_psi = float(elevation_pressure(rise_ft))
         return PointCurve(tuple((flow, pressure - lower_psi) for flow, pressure in self.points))
+
+    def _largest_flow(self, pressure_psi: float) -> float:
+        flows, pressures = self._sorted()
+        for last in range(len(flows) - 1, 0, -1):
+            ends = pressures[last - 1 : last + 1]
+            if min(ends) <= pressure_psi <= max(ends):
+                if ends[0] == ends[1]:
+                    return float(flows[last])
+                share = (pressure_psi - ends[1]) / (ends[0] - ends[1])
+                return float(flows[last] - share * (flows[last] - flows[last - 1]))
+        return float("nan")
 
     def _sorted(self) -> tuple[NDArray[np.float64], NDArray[np.float64]]:
         flows, pressures = np.array(sorted(self.points), dtype=float).T
@@ -231,7 +251,7 @@ def drop_fraction(static_psi: float, residual_psi: float) -> float:
     Raises
     ------
     OutOfRangeError
-        If the static is not above 0.
+        If the static is not above 0, or the residual not a finite number.
 
     References
     ----------
@@ -242,10 +262,19 @@ def drop_fraction(static_psi: float, residual_psi: float) -> float:
     >>> round(drop_fraction(68, 50), 3)
     0.265
     """
-    if not static_psi > 0:
+    if not 0 < static_psi < np.inf:
         raise OutOfRangeError(f"static_psi: {static_psi} is not above 0; give the static")
+    if not np.isfinite(residual_psi):
+        raise OutOfRangeError(f"residual_psi: {residual_psi} is no finite number; give the residual")
     return (static_psi - residual_psi) / static_psi
 
 
 def _as_given(value: NDArray[np.float64]) -> Amount:
     return float(value) if np.ndim(value) == 0 else value
+
+
+def _finite_pressure(pressure_psi: Amount) -> NDArray[np.float64]:
+    pressure = np.asarray(pressure_psi, dtype=np.float64)
+    if not np.all(np.isfinite(pressure)):
+        raise OutOfRangeError(f"pressure_psi: {pressure_psi} is no finite number; give a pressure", name="pressure_psi")
+    return pressure
