@@ -70,14 +70,15 @@ def due_lists(history: SupplyHistory, as_of: date) -> tuple[DueList, ...]:
     Parameters
     ----------
     history : SupplyHistory
-        The supply with its systems, gauges, tests and profiles.
+        The supply with its systems, gauges, tests and profiles [-].
     as_of : date
-        The day asked about; entries of later days are left out.
+        The day asked about; entries of later days are left out [-].
 
     Returns
     -------
     tuple[DueList, ...]
-        One list for each profile. Empty where no adopted standard is recorded for that day: then nothing is due.
+        One list for each profile. Empty where no adopted standard is recorded for that day: then nothing is due
+        [-].
 
     References
     ----------

@@ -48,18 +48,23 @@ def next_window(frequency: Frequency, last: date | None, baseline: date | None, 
     Parameters
     ----------
     frequency : Frequency
-        How often, counted from what.
+        How often, counted from what [-].
     last : date | None
-        The day it was last done.
+        The day it was last done [-].
     baseline : date | None
-        The day the part was installed: counted from where nothing was done, and always by a frequency so anchored.
+        The day the part was installed: counted from where nothing was done, and always by a frequency so anchored
+        [-].
     as_of : date
-        The day asked about.
+        The day asked about [-].
 
     Returns
     -------
     Window | None
-        None where there is no day to count from.
+        Days; None where there is no day to count from [-].
+
+    References
+    ----------
+    NFPA 25, 3.7, definitions of the frequencies.
     """
     window = _unseasoned(frequency, last, baseline, as_of)
     if window is None:
