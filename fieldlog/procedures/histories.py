@@ -23,6 +23,7 @@ from fieldlog.procedures.read_tests import (
 )
 from fieldlog.procedures.rule_profile import rule_profile
 from fieldlog.procedures.system import System as SystemBody
+from fieldlog.procedures.system_versions import SuppliesInTime, drain_changed_on, versions_of
 from fieldlog.records.entries import Entry
 from fieldlog.records.history import (
     Gauge,
@@ -50,7 +51,7 @@ def histories(in_force: Iterable[Entry], earlier: Iterable[Entry] = ()) -> tuple
     in_force : iterable of Entry
         The versions in force of the site's subjects and of the organisation's; order does not matter.
     earlier : iterable of Entry
-        All versions, for what only they tell: on which supply a system was before.
+        All versions, for what only they tell: on which supply a system was before, and when its drain changed.
     """
     typed = [typed_entry(entry) for entry in sorted(in_force, key=lambda entry: entry.number)]
     by_kind: dict[str, list[Typed]] = {kind: [] for kind in PROCEDURES}
@@ -75,71 +76,46 @@ class _Reader:
 
     def __init__(self, by_kind: Mapping[str, Sequence[Typed]], versions: Mapping[str, Entry], supply: Typed) -> None:
         self.by_kind = by_kind
-        self.versions = versions
         self.supply = supply
         self.gauges = gauges_of(by_kind["gauge"], by_kind["gauge_comparison"])
+        self.versions = {one.entry.subject: versions_of(one.entry, versions) for one in by_kind["system"]}
+        self.supplies = {system: SuppliesInTime(versions) for system, versions in self.versions.items()}
 
     def history(self, through_number: int) -> SupplyHistory:
         site = str(self.supply.entry.site)
-        systems = [self._system(one) for one in self.by_kind["system"] if self._stays(one)]
+        uid = self.supply.entry.subject
+        systems = [
+            self._system(one) for one in self.by_kind["system"] if self.supplies[one.entry.subject].has_been_on(uid)
+        ]
         flow_tests = [
             flow_test(one.entry, one.body)
             for one in self.by_kind["flow_test"]
-            if one.body.supply == self.supply.entry.subject and one.body.static is not None and one.body.points
+            if one.body.supply == uid and one.body.static is not None and one.body.points
         ]
         return SupplyHistory(
             site=site,
             supply=supply_record(self.supply.entry, self.supply.body),
             systems=tuple(sorted(systems, key=lambda system: (system.name, system.uid))),
             flow_tests=tuple(sorted(flow_tests, key=_when)),
-            supply_gauges=self._gauges("supply", self.supply.entry.subject),
-            gauge_readings=self._readings(self._gauges("supply", self.supply.entry.subject)),
+            supply_gauges=self._gauges("supply", uid),
+            gauge_readings=self._readings(self._gauges("supply", uid)),
             organisation_gauges=tuple(gauge for gauge in self.gauges if gauge.of == "organisation"),
             profiles=self._profiles(site),
             through_number=through_number,
         )
 
-    def _stays(self, system: Typed) -> bool:
-        """Return whether the system is on this supply now, or was before, in an earlier version."""
-        return any(body.supply == self.supply.entry.subject for _, body in self._spans(system))
-
-    def _spans(self, system: Typed) -> list[tuple[date, SystemBody]]:
-        """Return from which day on which version of the system held, newest first."""
-        spans: list[tuple[date, SystemBody]] = []
-        entry: Entry | None = system.entry
-        while entry is not None:
-            body = msgspec.convert(entry.body, SystemBody)
-            spans.append((body.on_supply_since or date.min, body))
-            entry = self.versions.get(entry.based_on or "")
-        return spans
-
-    def _is_on(self, system: Typed, on: date) -> bool:
-        """Return whether the system was on this supply on that day."""
-        for since, body in self._spans(system):
-            if since <= on:
-                return bool(body.supply == self.supply.entry.subject)
-        return False
-
-    def _left_on(self, system: Typed) -> date | None:
-        """Return from which day the system was on another supply; None while it is on this one."""
-        left = None
-        for since, body in self._spans(system):
-            if body.supply == self.supply.entry.subject:
-                return left
-            left = since
-        return left
-
     def _system(self, one: Typed) -> System:
         body: SystemBody = one.body
         uid = one.entry.subject
         found = self._design(uid)
+        changed_on = [day for day in (drain_changed_on(self.versions[uid]), self._restored_on(uid, "drain")) if day]
         system = System(
             uid=uid,
             entry=one.entry.number,
             name=body.name,
             type=body.type,
             base_elevation_ft=None if body.base_elevation is None else body.base_elevation.ft,
-            drain=drain(body, self._restored_on(uid, "drain")),
+            drain=drain(body, max(changed_on, default=None)),
             feed=feed(body),
             hose_point=body.hose_point,
             header=body.header,
@@ -150,24 +126,26 @@ class _Reader:
             alarm=body.alarm,
             valves=tuple(valve.id for valve in body.valves),
             normally_shut=tuple(valve.id for valve in body.valves if valve.normal != "open"),
-            on_supply_since=body.on_supply_since,
-            on_supply_until=self._left_on(one),
+            on_supply_since=self.supplies[uid].since(self.supply.entry.subject),
+            on_supply_until=self.supplies[uid].left_on(self.supply.entry.subject),
             feed_changed_on=body.feed_changed_on,
             design=None if found is None else design(found.entry, found.body),
             gauges=self._gauges("system", uid),
             repairs=self._repairs(uid),
             impairments=self._impairments(uid),
         )
-        return self._with_tests(system, one)
+        return self._with_tests(system)
 
-    def _with_tests(self, system: System, one: Typed) -> System:
+    def _with_tests(self, system: System) -> System:
+        on, here = self.supplies[system.uid].on, self.supply.entry.subject
+
         def of(kind: str, read: Any) -> tuple[Any, ...]:  # noqa: ANN401  a reader of one kind of test
             tests = [
                 read(test.entry, test.body)
                 for test in self.by_kind[kind]
                 if (test.entry.system == system.uid or system.uid in getattr(test.body, "serves", ()))
                 and test.body.done != "not"
-                and self._is_on(one, test.body.performed_on)
+                and on(test.body.performed_on) == here
             ]
             return tuple(sorted(tests, key=_when))
 
@@ -177,7 +155,7 @@ class _Reader:
             alarm_tests=of("inspectors_test", alarm_test),
             forward_flow_tests=tuple(test for test in of("forward_flow_test", forward_flow_test) if test is not None),
             valve_status_tests=of("valve_status_test", valve_status_test),
-            gauge_readings=self._readings(system.gauges),
+            gauge_readings=tuple(one for one in self._readings(system.gauges) if on(one.performed_on) == here),
         )
 
     def _readings(self, gauges: Iterable[Gauge]) -> tuple[Any, ...]:
@@ -205,16 +183,14 @@ class _Reader:
         found = [one for one in self.by_kind["design_record"] if one.entry.system == system]
         return max(found, key=_design_order, default=None)
 
-    def _deficiency(self, uid: str) -> Typed | None:
-        return next((one for one in self.by_kind["deficiency"] if one.entry.subject == uid), None)
-
     def _repairs(self, system: str) -> tuple[Repair, ...]:
-        found = []
-        for one in self.by_kind["remedy"]:
-            about = self._deficiency(one.body.deficiency)
-            if about is not None and about.entry.system == system:
-                confirmed = one.body.confirmed_by is not None
-                found.append(Repair(one.entry.number, one.body.done_on, one.body.restores, system, confirmed))
+        """Return the remedies of the system's deficiencies, and of those that name no system and so concern all."""
+        about = {one.entry.subject: one for one in self.by_kind["deficiency"]}
+        found = [
+            Repair(one.entry.number, one.body.done_on, one.body.restores, system, one.body.confirmed_by is not None)
+            for one in self.by_kind["remedy"]
+            if one.body.deficiency in about and about[one.body.deficiency].entry.system in {None, system}
+        ]
         return tuple(sorted(found, key=lambda repair: (repair.done_on, repair.entry)))
 
     def _restored_on(self, system: str, what: str) -> date | None:
@@ -222,10 +198,15 @@ class _Reader:
         return max(days, default=None)
 
     def _impairments(self, system: str) -> tuple[OpenImpairment, ...]:
+        """Return what has begun and not ended: neither an end is recorded nor a remedy confirmed."""
+        remedied = {one.body.deficiency for one in self.by_kind["remedy"] if one.body.confirmed_by is not None}
         return tuple(
-            OpenImpairment(one.entry.number, system, one.body.began_at, one.body.text)
+            OpenImpairment(one.entry.number, one.entry.system, one.body.began_at, one.body.text)
             for one in self.by_kind["deficiency"]
-            if one.entry.system == system and one.body.class_ == "impairment" and one.body.ended_at is None
+            if one.entry.system in {None, system}
+            and one.body.class_ == "impairment"
+            and one.body.ended_at is None
+            and one.entry.subject not in remedied
         )
 
 

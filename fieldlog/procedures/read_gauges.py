@@ -14,7 +14,9 @@ from fieldlog.records.history import Gauge, GaugeComparison
 
 def gauges_of(gauges: Sequence[Any], comparisons: Iterable[Any]) -> tuple[Gauge, ...]:
     """Return all gauges, by installation and entry; one that another replaces ends when that one begins."""
-    ends = {one.body.replaces: one.body.installed_on for one in gauges if one.body.replaces is not None}
+    replacing = [one.body for one in gauges if one.body.replaces is not None and one.body.installed_on is not None]
+    # The earliest counts where two replace the same.
+    ends = {body.replaces: body.installed_on for body in sorted(replacing, key=_installed_on, reverse=True)}
     ranges = {one.entry.subject: one.body.range for one in gauges}
     compared: dict[str, list[GaugeComparison]] = {}
     for one in comparisons:
@@ -24,10 +26,14 @@ def gauges_of(gauges: Sequence[Any], comparisons: Iterable[Any]) -> tuple[Gauge,
     return tuple(sorted(found, key=lambda gauge: (gauge.installed_on or date.min, gauge.entry)))
 
 
+def _installed_on(body: GaugeBody) -> date:
+    return body.installed_on or date.min
+
+
 def _gauge(
     entry: Entry, body: GaugeBody, replaced_on: date | None, compared: dict[str, list[GaugeComparison]]
 ) -> Gauge:
-    owner = {"system": entry.system, "supply": body.supply, "organisation": entry.author}[body.of]
+    owner = {"system": entry.system, "supply": body.supply, "organisation": None}[body.of]
     comparisons = sorted(compared.get(entry.subject, ()), key=lambda one: (one.performed_on, one.entry))
     return Gauge(
         uid=entry.subject,

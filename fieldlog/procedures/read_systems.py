@@ -31,11 +31,10 @@ def supply_record(entry: Entry, body: SupplyBody) -> Supply:
     )
 
 
-def drain(body: SystemBody, restored_on: date | None) -> Drain | None:
-    """Return the main drain; `since` is the later of its recorded change and a remedy that restored it."""
+def drain(body: SystemBody, since: date | None) -> Drain | None:
+    """Return the main drain, as it is `since` a day."""
     if body.drain is None:
         return None
-    since = max((day for day in (body.drain_changed_on, restored_on) if day is not None), default=None)
     stated = body.drain
     return Drain(
         id=stated.id,

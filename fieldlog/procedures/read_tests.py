@@ -98,6 +98,7 @@ def alarm_test(entry: Entry, body: InspectorsTest) -> AlarmTest:
         monitoring_s=_seconds(body.to_monitoring),
         trip_s=_seconds(body.trip),
         delivery_s=_seconds(body.delivery),
+        did_not_come=body.did_not_sound,
         is_full_flow=body.full_flow,
         standing=body.standing,
         air_start_psi=_reading_psi(body.air_at_start),

@@ -52,7 +52,7 @@ class Gauge:
     uid: str
     entry: int
     of: Literal["system", "supply", "organisation"]
-    owner: str  # uid of the system, supply or organisation
+    owner: str  # uid of the system or supply; empty for the organisation's
     side: Literal["supply", "system", "air"] | None = None
     tap: Tap = "unknown"
     behind: tuple[str, ...] = ()  # check, alarm, backflow, prv between source and gauge
@@ -167,6 +167,7 @@ class AlarmTest:
     monitoring_s: float | None = None
     trip_s: float | None = None
     delivery_s: float | None = None
+    did_not_come: bool = False  # the alarm never came
     is_full_flow: bool | None = None
     standing: Literal["routine", "acceptance", "after repair"] = "routine"
     air_start_psi: float | None = None
