@@ -127,5 +127,11 @@ def test_a_pumper_outlets_factor_lies_between_its_neighbours_and_stops_at_the_en
     assert f.pumper_outlet_factor(np.array([0.4, 30.0])).tolist() == [0.97, 0.83]
 
 
+def test_the_velocity_is_that_of_continuity() -> None:
+    # By definition: a US gallon is 231 in.3; 210 gpm in 3.068 in.
+    inches_a_minute = 210 * 231 / (math.pi / 4 * 3.068**2)
+    assert f.velocity(210.0, 3.068) == pytest.approx(inches_a_minute / 12 / 60, rel=1e-4)
+
+
 def test_a_residual_above_the_static_gives_a_negative_index() -> None:
     assert f.drain_index(63, 66) < 0
