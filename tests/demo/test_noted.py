@@ -33,3 +33,6 @@ def test_what_is_noted_is_a_multiple_of_the_division_next_to_the_value(value: fl
 def test_quantities_are_noted_in_the_units_of_the_site() -> None:
     written = (noted.pressure(58.0, BAR), noted.flow(350.0, BAR), noted.height(4.0, BAR))
     assert [(one.value, one.unit) for one in written] == [("4.00", "bar"), ("1320", "L/min"), ("1.2", "m")]
+    in_kpa = noted.pressure(58.0, SiteUnits(pressure="kPa", flow="L/min", length="m"))
+    assert (in_kpa.value, in_kpa.unit) == ("400", "kPa")
+    assert noted.pressure(58.7, SiteUnits(pressure="kPa")).value == "405"

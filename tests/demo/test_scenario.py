@@ -14,6 +14,7 @@ import pytest
 from fieldlog.assessment.codes import ReasonCode
 from fieldlog.demo import scenario, story
 from fieldlog.demo.pen import ORGANISATION, uid_of
+from fieldlog.demo.plan import BASE_FT, GAUGE_FT, OUTLET_FT
 from fieldlog.demo.visits import attendances
 from fieldlog.procedures.catalogue import PROCEDURES, may_make
 from fieldlog.procedures.read import Parsed, parse
@@ -147,6 +148,14 @@ def test_one_site_has_no_rule_profile_and_the_others_one_approved_by_the_enginee
     profiles = bodies("rule_profile")
     assert len(profiles) == 6
     assert {profile.approved_by for profile in profiles} == {"Licensed engineer A"}
+
+
+def test_heights_on_record_are_those_the_simulator_reads_at() -> None:
+    for gauge in (body for body in bodies("gauge") if body.of == "system"):
+        assert gauge.elevation.ft == pytest.approx(GAUGE_FT, abs=0.17)  # half of 0.1 m
+    for system in bodies("system"):
+        assert system.base_elevation.ft == pytest.approx(BASE_FT, abs=0.17)
+        assert system.drain.outlet_elevation.ft == pytest.approx(OUTLET_FT, abs=0.17)
 
 
 def test_some_design_records_are_missing() -> None:
