@@ -147,13 +147,13 @@ class _Reader:
                 and test.body.done != "not"
                 and on(test.body.performed_on) == here
             ]
-            return tuple(sorted(tests, key=_when))
+            return tuple(sorted((test for test in tests if test is not None), key=_when))
 
         return replace(
             system,
             drain_tests=of("main_drain_test", drain_test),
             alarm_tests=of("inspectors_test", alarm_test),
-            forward_flow_tests=tuple(test for test in of("forward_flow_test", forward_flow_test) if test is not None),
+            forward_flow_tests=of("forward_flow_test", forward_flow_test),
             valve_status_tests=of("valve_status_test", valve_status_test),
             gauge_readings=tuple(one for one in self._readings(system.gauges) if on(one.performed_on) == here),
         )

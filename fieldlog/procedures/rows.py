@@ -41,7 +41,7 @@ class Row:
 
 def rows(body: msgspec.Struct, names: Names = lambda uid: uid) -> list[Row]:
     """Return what was entered, in the order of the work; `names` tells by which name a uid goes."""
-    return list(_rows(body, names))
+    return [row for row in _rows(body, names) if row.value]  # a part in which nothing was stated says nothing
 
 
 def _rows(body: msgspec.Struct, names: Names, before: str = "") -> Iterator[Row]:
@@ -54,8 +54,14 @@ def _rows(body: msgspec.Struct, names: Names, before: str = "") -> Iterator[Row]
             yield from _of_many(value, names, label)
         elif isinstance(value, msgspec.Struct):
             yield from _of_struct(value, names, label)
+        elif field.choices:
+            yield Row(label, _CHOSEN.get((field.name, value)) or value.replace("_", " "))
         else:
             yield Row(label, _text(value, names))
+
+
+# Choices that do not read as an answer by themselves.
+_CHOSEN = {("done", "partly"): "partly done", ("done", "not"): "not done", ("pump_state", "none"): "no pump"}
 
 
 def _of_many(values: Sequence[msgspec.Struct], names: Names, label: str) -> Iterator[Row]:
@@ -86,7 +92,7 @@ def _of_struct(value: msgspec.Struct, names: Names, label: str) -> Iterator[Row]
 def _of_reading(value: PressureReading, label: str, *more: str) -> Row:
     parts = [f"needle swung {value.low or '?'} to {value.high or '?'}"] if value.low or value.high else []
     if value.pump_state:
-        parts.append(f"pump {value.pump_state}")
+        parts.append("no pump" if value.pump_state == "none" else f"pump {value.pump_state}")
     note = ", ".join([*parts, *(text for text in more if text)])
     return Row(label, value.value, value.unit, note, value.gauge or "", is_reading=True)
 
@@ -106,7 +112,7 @@ def _valve(valve: ValveFound) -> str:
     parts = [f"{word} {state}" for word, state in (("found", valve.found), ("left", valve.left)) if state]
     times = ((valve.shut_at, "shut"), (valve.opened_at, "opened"))
     parts += [f"{word} {when}" for when, word in times if when]
-    return f"{valve.id} {', '.join(parts)}"
+    return f"{valve.id} {', '.join(parts)}".rstrip()
 
 
 def _restoration(restored: Restoration) -> str:

@@ -408,6 +408,11 @@ def test_other_tests_come_through() -> None:
     assert (read.valve_status_tests[0].valve, read.valve_status_tests[0].flow_seen) == ("V1", True)
 
 
+def test_a_forward_flow_test_without_its_flow_is_no_evidence() -> None:
+    body = {"performed_on": "2024-05-08", "done": "partly", "not_done_reason": "outlet frozen", "at_riser": psi("66")}
+    assert system(history(*SITE_ENTRIES, entry(43, "forward_flow_test", body, system=WET))).forward_flow_tests == ()
+
+
 @given(st.randoms(use_true_random=False))
 def test_the_order_of_entries_changes_nothing(shuffle: random.Random) -> None:
     confirmed = remedy(61, IMPAIRED, confirmed_by="Office A", restores="drain")

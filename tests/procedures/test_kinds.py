@@ -274,6 +274,19 @@ def test_report_rows_of_a_main_drain_test() -> None:
     assert printed["Time to return"].note == "by stop clock"
 
 
+def test_report_rows_word_choices_and_leave_out_what_says_nothing() -> None:
+    body = {"performed_on": "2026-10-03", "done": "not", "not_done_reason": "frost", "restored": {},
+            "pump_state": "none", "valves": [{"id": "V1"}]}  # fmt: skip
+    printed = {row.label: row.value for row in rows(decode_body("main_drain_test", body))}
+    assert (printed["Done"], printed["Fire pump"], printed["Valves on the way of the water"]) == (
+        "not done", "no pump", "V1",
+    )  # fmt: skip
+    assert "Normal condition restored" not in printed
+    at = {row.label: row.value for row in rows(decode_body("flow_test", examples.MINIMAL["flow_test"] | {
+        "at": "base_of_riser"}))}  # fmt: skip
+    assert at["Gauge stood at"] == "base of riser"
+
+
 # Who may make which kind (the contract's table).
 TECHNICIAN_NOT = {"design_record", "rule_profile", "organisation", "person", "event"}
 
