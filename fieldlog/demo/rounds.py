@@ -29,6 +29,7 @@ _PUMP_PSI = 20.0  # a running pump adds to the main behind it
 _TRAPPED_PSI = 15.0  # a check valve holds in the riser
 _MISREAD_PSI = 10.0  # a wrong graduation
 _NOT_BACK_PSI = 22.0
+_AIR_PSI, _AIR_AT_TRIP_PSI = 38.0, 18.0
 _OUTLET_IN, _COEFFICIENT = "2.5", "0.90"
 
 Standing = Literal["routine", "acceptance", "after repair"]
@@ -199,8 +200,8 @@ def inspectors_test(day: Round, standing: Standing = "routine") -> InspectorsTes
     return InspectorsTest(
         performed_on=day.on, item="dry valve", kind="trip", standing=standing, delivery=taken, full_flow=True,
         trip=Duration(seconds=12, how="stop clock"), to_device=Duration(seconds=15, how="stop clock"),
-        air_at_start=PressureReading(value="38", unit="psi"), water_at_start=water,
-        air_at_trip=PressureReading(value="18", unit="psi"), restored=restored(day.on), cautions=CAUTIONS,
+        air_at_start=_on_paper(_AIR_PSI, day.site.units), water_at_start=water,
+        air_at_trip=_on_paper(_AIR_AT_TRIP_PSI, day.site.units), restored=restored(day.on), cautions=CAUTIONS,
     )  # fmt: skip
 
 
