@@ -51,6 +51,19 @@ def test_a_report_is_made_and_verified_and_a_changed_one_is_not(demo: Path, tmp_
     assert run(demo, "verify", str(changed)).exit_code == 1
 
 
+def test_a_report_is_made_of_any_signed_visit_and_the_visits_are_listed(demo: Path, tmp_path: Path) -> None:
+    listed = run(demo, "report").output.splitlines()
+    assert any("report revision 1" in line for line in listed)
+    visit = next(line for line in listed if "North Quay" in line).split()[0]
+    made = run(demo, "report", visit, "--out", str(tmp_path / "out"))
+    assert made.exit_code == 0, made.output
+    (copy,) = (tmp_path / "out").iterdir()
+    assert copy.name.startswith("North-Quay-Warehouse-")
+    assert run(demo, "verify", str(copy)).exit_code == 0
+    assert "report revision 1" in next(line for line in run(demo, "report").output.splitlines() if visit in line)
+    assert run(demo, "report", "no-such-visit").exit_code == 4
+
+
 def test_an_edited_entry_is_named_and_its_report_no_longer_agrees(demo: Path) -> None:
     assert run(demo, "check-log").exit_code == 0
     report = report_of(demo)

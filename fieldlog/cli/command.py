@@ -48,8 +48,8 @@ class FieldlogGroup(click.Group):
 
 
 @contextmanager
-def progress(label: str, length: int | None) -> Iterator[Callable[[int], None]]:
-    """Give a function to call with the number of steps done; shows a bar on a terminal, nothing elsewhere."""
+def progress(label: str, length: int) -> Iterator[Callable[[int], None]]:
+    """Give a function to call with the number of steps done; a bar on a terminal, its label elsewhere."""
     bar: Any
     with click.progressbar(length=length, label=label, file=sys.stderr, show_pos=True) as bar:
         yield bar.update

@@ -8,7 +8,7 @@ import click
 import msgspec
 
 from fieldlog import clock, settings
-from fieldlog.cli.command import SOMETHING_DOES_NOT_HOLD, end_with, progress
+from fieldlog.cli.command import SOMETHING_DOES_NOT_HOLD, end_with
 from fieldlog.cli.paragraphs import paragraphs
 from fieldlog.services import reporting, sites
 from fieldlog.services.instance import open_instance
@@ -43,8 +43,7 @@ def report(visit: str | None, out: Path | None, without_photos: bool) -> None:  
         for row in reporting.visit_rows(opened):
             click.echo(f"{row.uid}  {row.on:%Y-%m-%d}  {row.site}  {row.state}")
         return
-    with progress("report", None):
-        made = reporting.make_report(opened, visit, clock.now(), accept_missing_photos=without_photos)
+    made = reporting.make_report(opened, visit, clock.now(), accept_missing_photos=without_photos)
     path = made.path
     if out is not None:
         path = reporting.write_copy(made, out)

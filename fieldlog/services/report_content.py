@@ -181,8 +181,11 @@ def _sections(scope: Scope) -> Iterator[Section]:
     if findings:
         yield Section("Findings", tuple(findings))
     said = {one.system: one for one in reversed(_printed(scope))}
+    rounds = [_test(scope, one) for one in scope.covered if _about(one) is None]
+    if rounds:
+        yield Section("Of the whole site", tuple(rounds))
     for history in scope.histories:
-        blocks = [_test(scope, one) for one in scope.covered if _is_of_supply(one, history)]
+        blocks = [_test(scope, one) for one in scope.covered if _about(one) == history.supply.uid]
         if blocks:
             yield Section(f"Water supply: {history.supply.name}", tuple(blocks))
         for system in history.systems:
@@ -190,12 +193,12 @@ def _sections(scope: Scope) -> Iterator[Section]:
                 yield _system_section(scope, history, system, said[system.uid])
 
 
-def _is_of_supply(one: Typed, history: SupplyHistory) -> bool:
-    """Return whether a test is about the supply as such: a flow test, or readings named with no system."""
-    if not PROCEDURES[one.entry.kind].is_test or one.entry.system is not None:
-        return False
-    named = getattr(one.body, "supply", None)
-    return named in {None, history.supply.uid}
+def _about(one: Typed) -> str | None:
+    """Return the system or supply a test is about; None for a round of the whole site, "" for what is no test."""
+    if not PROCEDURES[one.entry.kind].is_test:
+        return ""
+    about: str | None = one.entry.system or getattr(one.body, "supply", None)
+    return about
 
 
 def _system_section(scope: Scope, history: SupplyHistory, system: System, said: SystemStatement) -> Section:
