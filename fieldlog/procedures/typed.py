@@ -95,6 +95,8 @@ def typed_seconds(text: str, field: str) -> int:
     match = _CLOCK.match(_plain(text).casefold())
     if match is None or not (match["minutes"] or match["seconds"]):
         raise InputError(f"{field}: {text.strip()!r} is no duration; write seconds, or 1:10", field=field)
+    if match["minutes"] and int(match["seconds"] or 0) > 59:
+        raise InputError(f"{field}: {text.strip()!r} has more than 59 seconds beside minutes; write 1:10", field=field)
     return 60 * int(match["minutes"] or 0) + int(match["seconds"] or 0)
 
 

@@ -29,7 +29,10 @@ from fieldlog.units import DecimalText
 Basis = Literal["read", "from memory"]
 Mark = Literal["read", "from memory", "approved"]
 RuleId = Annotated[str, msgspec.Meta(pattern=r"^[a-z][a-z0-9_]*(\.[a-z0-9_]+)*(?!\n)$")]
-Words = Annotated[str, msgspec.Meta(min_length=1, max_length=2000)]
+# Texts are printed on terminals and pages: nothing in them may steer either.
+Words = Annotated[
+    str, msgspec.Meta(min_length=1, max_length=2000, pattern=r"^[^\x00-\x08\x0b\x0c\x0e-\x1f\x7f-\x9f]*$")
+]
 Month = Annotated[int, msgspec.Meta(ge=1, le=12)]
 SystemType = Literal["wet", "dry", "preaction", "deluge", "standpipe"]
 SatisfiedBy = Literal[
@@ -214,8 +217,8 @@ class ProfileValues(_Part, frozen=True, kw_only=True):
     in_force_from: date
     judged_on: Literal["low_day", "on_the_day"]
     rules: Annotated[tuple[Rule, ...], msgspec.Meta(min_length=1)]
-    amendment: str | None = None
-    jurisdiction: str | None = None
+    amendment: Words | None = None
+    jurisdiction: Words | None = None
     in_force_until: date | None = None
     overrides: tuple[Override, ...] = ()
 

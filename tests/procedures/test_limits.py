@@ -177,6 +177,12 @@ def test_the_envelope_has_limits_too(change: dict[str, Any], field: str) -> None
     assert caught.value.field == field
 
 
+def test_texts_of_a_rule_profile_steer_no_terminal() -> None:
+    with pytest.raises(InputError) as caught:
+        decode_body("rule_profile", {"standard": "\x1b[2J"})
+    assert caught.value.field == "body.standard"
+
+
 def test_a_field_tells_its_limits_to_forms() -> None:
     limits = {field.name: field.limits for body in (Outlet, FeedPart) for field in fields(body)}
     assert limits["size"] == {"above": "0"}

@@ -94,13 +94,23 @@ def test_comma_and_point_say_the_same(value: object) -> None:
 
 @pytest.mark.parametrize(
     ("text", "seconds"),
-    [("6", 6), ("6 s", 6), ("6 sec", 6), ("0:06", 6), ("1:10", 70), ("2 min", 120), ("1 min 10 s", 70)],
+    [
+        ("6", 6),
+        ("6 s", 6),
+        ("6 sec", 6),
+        ("0:06", 6),
+        ("1:10", 70),
+        ("2 min", 120),
+        ("1 min 10 s", 70),
+        ("1 min 10", 70),
+        ("95", 95),
+    ],
 )
 def test_durations(text: str, seconds: int) -> None:
     assert typed_seconds(text, "return") == seconds
 
 
-@pytest.mark.parametrize("text", ["", "x", "1:10:10", "-3", "6 hours"])
+@pytest.mark.parametrize("text", ["", "x", "1:10:10", "-3", "6 hours", "1:75", "2 min 60 s"])
 def test_no_duration(text: str) -> None:
     with pytest.raises(InputError):
         typed_seconds(text, "return")
