@@ -96,7 +96,7 @@ def make_report(instance: Instance, visit: str, at: datetime, *, accept_missing_
     scope = scope_of(connection, visit, at.date())
     earlier = reports.of_visit(connection, visit)
     if earlier and earlier[-1].sign_off == scope.sign_off.entry.uid:
-        return _on_file(instance, earlier[-1], scope)
+        return _on_file(instance, earlier[-1], scope, _printed_head(instance, earlier[-1]))
     if is_changed_since(connection, scope):
         raise ConflictError("entries of the visit were changed since it was signed; have it signed again")
     missing = _missing_photos(instance, scope)
@@ -123,7 +123,7 @@ def _seal_and_file(instance: Instance, scope: Scope, content: VisitReport, revis
     with transaction(instance.connection):
         reports.add(instance.connection, stored)
     _tell_the_log(instance, scope, stored, at)
-    return _on_file(instance, stored, scope)
+    return _on_file(instance, stored, scope, scope.head)
 
 
 def _tell_the_log(instance: Instance, scope: Scope, stored: StoredReport, at: datetime) -> None:
@@ -145,11 +145,17 @@ def _tell_the_log(instance: Instance, scope: Scope, stored: StoredReport, at: da
         raise ConflictError(f"the report is on file, but the log did not take its event: {refusal.message}")
 
 
-def _on_file(instance: Instance, stored: StoredReport, scope: Scope) -> MadeReport:
+def _printed_head(instance: Instance, stored: StoredReport) -> str:
+    """Return the head that a report on file carries, as its event tells it."""
+    told = entries.in_force_at_visit(instance.connection, stored.visit, ("event",))
+    return next((str(event.body["head"]) for event in told if event.body.get("sha256") == stored.sha256), "")
+
+
+def _on_file(instance: Instance, stored: StoredReport, scope: Scope, head: str) -> MadeReport:
     path = files.path_of(instance.settings.files, stored.sha256)
     site = "".join(char if char.isalnum() else "-" for char in str(scope.site.body["name"])).strip("-")
     name = f"{site}-{scope.on.isoformat()}-revision-{stored.revision}.pdf"
-    return MadeReport(path, name, stored.sha256, stored.revision, scope.head)
+    return MadeReport(path, name, stored.sha256, stored.revision, head)
 
 
 def write_copy(made: MadeReport, folder: Path) -> Path:
