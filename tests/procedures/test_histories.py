@@ -201,6 +201,14 @@ def test_a_gauge_taken_out_ends_that_day_though_another_replaces_it_later() -> N
     assert system(history(SUPPLY, WET_SYSTEM, taken_out, new)).gauges[0].ended_on == date(2021, 6, 1)
 
 
+def test_where_two_replace_the_same_gauge_it_ended_with_the_first() -> None:
+    later, first = (
+        entry(number, "gauge", OF_GAUGE | {"installed_on": on, "replaces": GAUGE}, uid=uid(number), system=WET)
+        for number, on in ((40, "2022-05-06"), (41, "2021-06-07"))
+    )
+    assert system(history(*SITE_ENTRIES, later, first)).gauges[0].ended_on == date(2021, 6, 7)
+
+
 def test_gauges_of_supply_and_organisation_stand_beside_those_of_systems() -> None:
     header = entry(8, "gauge", {"name": "G-20", "of": "supply", "supply": MAIN, "taps": "header"}, uid=uid(33))
     test_gauge = entry(9, "gauge", {"name": "T-7", "of": "organisation", "certificate": "C-3", "range": psi("200")},
@@ -314,6 +322,14 @@ def test_a_drain_recorded_for_the_first_time_is_no_change() -> None:
     read = system(history(SUPPLY, completed, earlier=(bare, completed)))
     assert read.drain is not None
     assert read.drain.since is None
+
+
+def test_completing_the_record_of_a_drain_is_no_change() -> None:
+    bare = entry(4, "system", WET_BODY | {"drain": {"id": "main drain"}}, uid=WET)
+    completed = version(8, bare, WET_BODY)
+    read = system(history(SUPPLY, completed, earlier=(bare, completed)))
+    assert read.drain is not None
+    assert (read.drain.since, read.drain.size_in) == (None, 2)
 
 
 IMPAIRED = entry(51, "deficiency", {

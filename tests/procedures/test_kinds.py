@@ -313,6 +313,26 @@ def test_where_water_flows_the_usual_cautions_are_there() -> None:
     assert "fire_watch" in {caution.code for caution in PROCEDURES["deficiency"].cautions}
 
 
+def test_what_is_left_open_when_composing_is_left_out() -> None:
+    body = decode_body("note", examples.MINIMAL["note"])
+    text = compose(
+        "note", body, uid=examples.PERSON, author=examples.OTHER, made_at="2026-10-03T10:00:00Z",
+        site=examples.GAUGE, system=None, withdrawn=False, reason=None,
+    )  # fmt: skip
+    assert set(json.loads(text)) == {"author", "body", "format", "kind", "made_at", "site", "subject", "uid"}
+
+
+def test_composing_refuses_what_intake_would() -> None:
+    body = decode_body("note", examples.MINIMAL["note"])
+    with pytest.raises(InputError, match="site"):
+        compose("note", body, uid=examples.PERSON, author=examples.OTHER, made_at="2026-10-03T10:00:00Z")
+    with pytest.raises(InputError, match="colour"):
+        compose(
+            "note", body, uid=examples.PERSON, author=examples.OTHER, made_at="2026-10-03T10:00:00Z",
+            site=examples.GAUGE, colour="red",
+        )  # fmt: skip
+
+
 def test_an_imported_row_has_the_same_uid_each_time() -> None:
     body = decode_body("main_drain_test", examples.MINIMAL["main_drain_test"])
     first = import_uid(examples.SYSTEM, "main_drain_test", date(2026, 10, 3), body, 1)
