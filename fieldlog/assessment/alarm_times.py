@@ -52,6 +52,8 @@ def alarm_findings(system: System, profile: RuleProfile | None, as_of: date) -> 
 
 def _alarm(tests: Sequence[AlarmTest], profile: RuleProfile | None) -> Iterator[Reason]:
     newest = tests[-1]
+    if newest.did_not_come:
+        yield Reason(ReasonCode.ALARM_DID_NOT_COME, {}, (newest.entry,), _SECTION)
     for which in ("device", "bell", "panel", "monitoring"):
         seconds = _seconds(newest, which)
         if seconds is None:

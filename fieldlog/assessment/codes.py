@@ -97,6 +97,7 @@ class ReasonCode(StrEnum):
     GAUGE_UNLIKE_PAST = "gauge_unlike_past"  # gauge, read_psi, low_psi, high_psi
     GAUGE_OUT_OF_ACCURACY = "gauge_out_of_accuracy"  # gauge, error_psi, share, limit_share
     ALARM_LATE = "alarm_late"  # which, seconds, limit_s
+    ALARM_DID_NOT_COME = "alarm_did_not_come"
     ALARM_LENGTHENING = "alarm_lengthening"  # which, seconds, earlier_s, tests
     DELIVERY_LONGER = "delivery_longer"  # seconds, acceptance_s, increase
     DELIVERY_LATE = "delivery_late"  # seconds, limit_s

@@ -45,3 +45,8 @@ PROCEDURES: Mapping[str, Procedure] = MappingProxyType(
 def may_make(role: str, kind: str) -> bool:
     """Return whether people of that role may make entries of that kind."""
     return role in PROCEDURES[kind].makers
+
+
+def withheld_from(role: str, kind: str) -> frozenset[str]:
+    """Return the fields of a kind that people of that role may not state: an owner confirms no own remedy."""
+    return next((names for other, names in PROCEDURES[kind].withheld.items() if other == role), frozenset())

@@ -2,8 +2,8 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
-from dataclasses import dataclass
+from collections.abc import Callable, Mapping
+from dataclasses import dataclass, field
 from typing import Any, Literal
 
 import msgspec
@@ -58,3 +58,4 @@ class Procedure:
     cautions: tuple[Caution, ...] = ()
     check: Callable[[Any], list[Problem]] = no_problems
     check_place: Callable[[Envelope, Any], list[Problem]] = in_its_place
+    withheld: Mapping[Role, frozenset[str]] = field(default_factory=dict)  # fields that a role may not state

@@ -31,5 +31,11 @@ def _problems(body: Remedy) -> list[Problem]:
 
 
 PROCEDURE = Procedure(
-    "remedy", "Remedy", Remedy, frozenset({"technician", "office", "owner"}), frozenset({"site"}), check=_problems
+    "remedy",
+    "Remedy",
+    Remedy,
+    frozenset({"technician", "office", "owner"}),
+    frozenset({"site"}),
+    check=_problems,
+    withheld={"owner": frozenset({"confirmed_by"})},
 )

@@ -12,7 +12,7 @@ from dataclasses import dataclass
 
 from fieldlog.canonical import sha256_hex
 from fieldlog.errors import ConflictError, FieldlogError, InputError, NotAllowedError
-from fieldlog.procedures.catalogue import may_make
+from fieldlog.procedures.catalogue import may_make, withheld_from
 from fieldlog.procedures.envelope import Envelope
 from fieldlog.procedures.read import parse
 from fieldlog.records.entries import Arrival, IntakeResult, Receipt, Refusal, Via
@@ -136,6 +136,9 @@ class _Known:
             raise NotAllowedError(
                 f"kind: the role {authority.role} may not make a {envelope.kind} entry; ask the office",
             )
+        withheld = sorted(withheld_from(authority.role, envelope.kind) & envelope.body.keys())
+        if withheld:
+            raise NotAllowedError(f"body.{withheld[0]}: the role {authority.role} may not state it; ask the office")
         if authority.sites is not None and envelope.site is not None and envelope.site not in authority.sites:
             raise NotAllowedError(f"site: {envelope.site} is not on file, or not for you; ask the office")
         if envelope.kind == "person":

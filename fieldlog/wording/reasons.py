@@ -190,6 +190,7 @@ SENTENCES: Mapping[str, tuple[str, ...]] = {
         "Gauge {gauge} was off by {error_psi:read}, {share:up} of full scale; the rule profile allows {limit_share}",
     ),
     Code.ALARM_LATE: ("The signal at the {which} came after {seconds}; the rule profile allows {limit_s}",),
+    Code.ALARM_DID_NOT_COME: ("The waterflow alarm did not come when water flowed",),
     Code.ALARM_LENGTHENING: (
         "The signal at the {which} came after {seconds}, later than in earlier tests ({tests}, middle value "
         "{earlier_s})",

@@ -36,6 +36,12 @@ def test_an_alarm_is_late_only_beyond_its_limit(changes: dict[str, float], codes
     assert found(alarm(2023, **changes), by=None) == []
 
 
+def test_an_alarm_that_never_came_is_found_whatever_the_rules() -> None:
+    assert found(alarm(2022, alarm_s=31.0), alarm(2023, did_not_come=True)) == ["alarm_did_not_come"]
+    assert found(alarm(2023, did_not_come=True), by=None) == ["alarm_did_not_come"]
+    assert found(alarm(2022, did_not_come=True), alarm(2023, alarm_s=31.0)) == []
+
+
 def test_a_lengthening_delay_is_reported_before_it_is_late() -> None:
     usual = [alarm(2016 + n, alarm_s=seconds) for n, seconds in enumerate((31.0, 34.0, 30.0, 33.0, 32.0))]
     assert found(*usual, alarm(2023, alarm_s=58.0)) == ["alarm_lengthening"]

@@ -17,7 +17,7 @@ from hypothesis import strategies as st
 from fieldlog.canonical import canonical_text
 from fieldlog.errors import InputError
 from fieldlog.procedures.bodies import decode_body, fields, json_schema, plain_body
-from fieldlog.procedures.catalogue import PROCEDURES, may_make
+from fieldlog.procedures.catalogue import PROCEDURES, may_make, withheld_from
 from fieldlog.procedures.compose import compose, import_uid
 from fieldlog.procedures.envelope import Kind
 from fieldlog.procedures.read import parse
@@ -298,6 +298,14 @@ def test_who_may_make_which(kind: str) -> None:
     assert may_make("owner", kind) == (kind == "remedy")
     assert may_make("instance", kind) == (kind in {"event", "organisation"})
     assert not may_make("stranger", kind)
+
+
+def test_an_owner_confirms_no_own_remedy() -> None:
+    assert withheld_from("owner", "remedy") == {"confirmed_by"}
+    assert withheld_from("office", "remedy") == withheld_from("technician", "remedy") == frozenset()
+    for kind, procedure in PROCEDURES.items():
+        names = {field.encode_name for field in msgspec.structs.fields(procedure.body)}
+        assert names >= withheld_from("owner", kind)
 
 
 def test_where_water_flows_the_usual_cautions_are_there() -> None:

@@ -7,6 +7,7 @@ from typing import Any
 
 import pytest
 
+from fieldlog.procedures.deficiency import Deficiency
 from fieldlog.procedures.event import Event
 from fieldlog.procedures.note import Note
 from fieldlog.procedures.organisation import Organisation
@@ -95,6 +96,20 @@ def test_who_may_make_which(office: Any, role: str, kind: str, is_taken: bool) -
         more = {"subject": organisation.subject, "based_on": organisation.uid, "reason": "moved", "site": None}
     result = office.take(office.text(kind, bodies[kind], **more), authority=intake.Authority(role))
     assert ("not_allowed" not in {refusal.code for refusal in result.refused}) == is_taken
+
+
+@pytest.mark.parametrize(("role", "is_taken"), [("owner", False), ("technician", True), ("office", True)])
+def test_an_owner_confirms_no_own_remedy(office: Any, role: str, is_taken: bool) -> None:
+    found = Deficiency(text="Grate missing", found_on=date(2026, 3, 4), class_="noncritical", proposed_by="fieldlog")
+    remedy = Remedy(
+        deficiency=office.enter("deficiency", found), done_on=date(2026, 3, 6), by="Owner", evidence="photo",
+        confirmed_by="Owner A",
+    )  # fmt: skip
+    result = office.take(office.text("remedy", remedy), authority=intake.Authority(role))
+    assert bool(result.receipts) == is_taken
+    assert [(one.field, one.code) for one in result.refused] == (
+        [] if is_taken else [("body.confirmed_by", "not_allowed")]
+    )
 
 
 def test_a_site_that_is_not_granted_is_as_one_that_is_not_there(office: Any) -> None:
