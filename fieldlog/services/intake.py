@@ -7,7 +7,7 @@ spoil a receipt; the supplies to judge are marked in the transaction of the entr
 from __future__ import annotations
 
 import json
-from collections.abc import Iterable, Sequence
+from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass
 
 from fieldlog.canonical import sha256_hex
@@ -123,6 +123,8 @@ class _Known:
         on_file = entries.in_force_of_kind(connection, "person", "organisation")
         self.people = {entry.subject for entry in on_file}
         self.organisation = next((e.subject for e in on_file if e.kind == "organisation"), None)
+        self.connection = connection
+        self.restored: dict[str, Mapping[str, object]] = {}  # of entries in this batch, by uid
 
     def admit(self, envelope: Envelope, authority: Authority) -> None:
         """Let the entry in, or raise why not."""
@@ -141,8 +143,28 @@ class _Known:
             raise NotAllowedError(f"body.{withheld[0]}: the role {authority.role} may not state it; ask the office")
         if authority.sites is not None and envelope.site is not None and envelope.site not in authority.sites:
             raise NotAllowedError(f"site: {envelope.site} is not on file, or not for you; ask the office")
+        if envelope.kind == "sign_off":
+            self._require_restored(envelope)
         if envelope.kind == "person":
             self.people.add(envelope.subject)
+        if envelope.body.get("restored"):
+            self.restored[envelope.uid] = envelope.body["restored"]
+
+    def _require_restored(self, sign_off: Envelope) -> None:
+        """Refuse to sign as finished what says itself that something is not back to normal."""
+        for covered in sign_off.body["covers"]:
+            restored = self.restored.get(covered["uid"]) or self._restored_on_file(covered["uid"])
+            still_open = sorted(name for name, state in restored.items() if state is False)
+            if still_open:
+                raise InputError(
+                    f"body.covers: entry {covered['uid']} says that {', '.join(still_open)} is not back to normal; "
+                    "restore it and correct the entry, or leave the visit open",
+                    field="body.covers",
+                )
+
+    def _restored_on_file(self, uid: str) -> Mapping[str, object]:
+        entry = entries.entry_by_uid(self.connection, uid)
+        return {} if entry is None else entry.body.get("restored", {})
 
     def _admit_organisation(self, envelope: Envelope) -> None:
         if envelope.kind != "organisation":

@@ -7,12 +7,17 @@ from typing import Any
 
 import pytest
 
+from fieldlog.canonical import sha256_hex
 from fieldlog.procedures.deficiency import Deficiency
 from fieldlog.procedures.event import Event
+from fieldlog.procedures.fields import Restoration
+from fieldlog.procedures.gauge_reading import GaugeReadings
 from fieldlog.procedures.note import Note
 from fieldlog.procedures.organisation import Organisation
 from fieldlog.procedures.remedy import Remedy
+from fieldlog.procedures.sign_off import Covered, Signer, SignOff
 from fieldlog.procedures.site import Site
+from fieldlog.procedures.visit import Visit
 from fieldlog.records.entries import Arrival, Receipt, Refusal
 from fieldlog.services import intake
 from fieldlog.storage import entries, refusals, statements
@@ -116,6 +121,24 @@ def test_a_site_that_is_not_granted_is_as_one_that_is_not_there(office: Any) -> 
     authority = intake.Authority("technician", frozenset({office_uid(3)}))
     result = office.take(office.text("note", Note(text="x")), authority=authority)
     assert [refusal.code for refusal in result.refused] == ["not_allowed"]
+
+
+@pytest.mark.parametrize("is_batch", [True, False])
+@pytest.mark.parametrize("is_shut", [True, False])
+def test_what_is_not_back_to_normal_is_not_signed_as_finished(office: Any, is_batch: bool, is_shut: bool) -> None:
+    visit = office.enter("visit", Visit(state="open", on=date(2026, 5, 6)))
+    body = GaugeReadings(
+        performed_on=date(2026, 5, 6), done="partly", not_done_reason="rain",
+        restored=Restoration(valves=True, drain_shut=is_shut),
+    )  # fmt: skip
+    reading = office.text("gauge_reading", body, visit=visit, uid=office_uid(41))
+    covers = (Covered(uid=office_uid(41), sha256=sha256_hex(reading)),)
+    signer = Signer(role="technician", name="Technician A", strokes="M 3 4 L 15 26")
+    signed = SignOff(covers=covers, signers=(signer,), summary="Only the listed items.", signed_on=date(2026, 5, 6))
+    sign_off = office.text("sign_off", signed, visit=visit)
+    results = [office.take(reading, sign_off)] if is_batch else [office.take(reading), office.take(sign_off)]
+    refused = [refusal.field for result in results for refusal in result.refused]
+    assert refused == ([] if is_shut else ["body.covers"])
 
 
 def test_only_what_bears_on_statements_marks_supplies(office: Any, history: Any) -> None:
