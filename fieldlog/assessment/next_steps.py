@@ -74,7 +74,9 @@ def next_steps(verdict: Verdict, evidence: Evidence) -> tuple[str, ...]:
         steps += _STEPS.get(reason.code, ())
     if evidence.supply.kind in {"pressure_tank", "parallel"}:
         steps = [NextCode.FORWARD_FLOW_TEST if step == NextCode.PUMP_TEST else step for step in steps]
-    return tuple(dict.fromkeys(steps))[:_MOST] or (NextCode.NEXT_TEST,)
+    # The next test when it is due is what is left where nothing else helps.
+    helps = [step for step in dict.fromkeys(steps) if step != NextCode.NEXT_TEST]
+    return tuple(helps[:_MOST]) or (NextCode.NEXT_TEST,)
 
 
 def cannot_show(history: SupplyHistory, system: System) -> tuple[str, ...]:

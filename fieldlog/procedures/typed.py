@@ -119,7 +119,7 @@ def _grouped(number: str, field: str) -> str:
 
 
 def _tidy(number: str, text: str, field: str) -> str:
-    match = re.fullmatch(r"(-?)0*([0-9]{1,9})?(?:\.([0-9]{0,9}))?", number)
+    match = re.fullmatch(r"(-?)(?:0*(?=[0-9]))?([0-9]{1,9})?(?:\.([0-9]{0,9}))?", number)
     if match is None or (match[2] is None and not match[3]):
         raise InputError(f"{field}: {text.strip()!r} is not a number of usual size; write it as 72.5", field=field)
     whole = match[2] or "0"

@@ -104,7 +104,8 @@ def _sorted_out(arrival: Arrival, known: _Known, authority: Authority) -> _Sorte
         envelope = parse(arrival.text).envelope
         known.admit(envelope, authority)
     except FieldlogError as error:
-        field = error.field if isinstance(error, InputError) else error.message.partition(":")[0]
+        named, colon, _ = error.message.partition(":")
+        field = error.field if isinstance(error, InputError) else named if colon and " " not in named else "kind"
         uid = envelope.uid if envelope is not None else uid_in(arrival.text)
         return _SortedOut(arrival, envelope, Refusal(uid, error.code, field, error.message))
     return _SortedOut(arrival, envelope, None)

@@ -29,6 +29,10 @@ from fieldlog.units import Flow, Length, Pressure
         ("\u22123", "-3", "psi"),
         (",5 bar", "0.5", "bar"),
         ("007", "7", "psi"),
+        ("0", "0", "psi"),
+        ("00", "0", "psi"),
+        ("0 bar", "0", "bar"),
+        ("0,0 bar", "0.0", "bar"),
         ("+7.", "7", "psi"),
     ],
 )
