@@ -30,6 +30,11 @@ EXCEPTIONS = {
     "assessment.windows.add": "adds to a day of the calendar",
     "assessment.windows.add_months": "adds to a day of the calendar",
     "assessment.windows.is_in_season": "compares months",
+    "hydraulics.ranges.above_zero": "checks a number of any unit",
+    "hydraulics.ranges.as_given": "keeps a number of any unit",
+    "hydraulics.ranges.finite": "checks a number of any unit",
+    "hydraulics.ranges.not_negative": "checks a number of any unit",
+    "hydraulics.tables.cell": "looks up what a table holds",
 }
 
 

@@ -216,7 +216,7 @@ def drain_k(drain: Drain | None, tests: Sequence[DrainTest] = ()) -> float | Non
         if k is not None:
             return k
     if drain.length_ft is not None and drain.length_ft >= 0:
-        return formulas.drain_k(_inside_in(drain.size_in), drain.length_ft, constants.DRAIN_K_RESIDUAL_PSI)
+        return float(formulas.drain_k(_inside_in(drain.size_in), drain.length_ft, constants.DRAIN_K_RESIDUAL_PSI))
     return next(k for size_in, k in constants.DRAIN_K_BY_SIZE if drain.size_in >= size_in)
 
 

@@ -7,23 +7,18 @@ not a number) is refused, never computed.
 from __future__ import annotations
 
 from dataclasses import dataclass
-from typing import Any
 
 import numpy as np
-from numpy.typing import ArrayLike, NDArray
 from scipy.optimize import brentq
 
-from fieldlog.errors import OutOfRangeError
-
-# A number, or an array of them; functions give back what they were given.
-Amount = Any
+from fieldlog.hydraulics.ranges import Amount, above_zero, as_given, finite, not_negative
+from fieldlog.hydraulics.tables import table
 
 FLOW_EXPONENT = 1.85
 PITOT_CONSTANT = 29.83  # sqrt(2 g) and water at about 60 F, gpm with in. and psi
 PSI_PER_FOOT = 0.433
 INDEX_EXPONENT = 0.925  # half of 1.85: the drain's own flow goes with the root of the residual
-_PUMPER_PITOTS_PSI = np.array([2.0, 3.0, 4.0, 5.0, 6.0, 7.0])
-_PUMPER_FACTORS = np.array([0.97, 0.92, 0.89, 0.86, 0.84, 0.83])
+_OUTLET_CONSTANT = 29.84  # as newer texts print it; in the estimate of a drain's K only
 
 
 @dataclass(frozen=True, slots=True)
@@ -66,7 +61,8 @@ def friction_loss(flow_gpm: Amount, c: Amount, diameter_in: Amount, law: Frictio
 
     Notes
     -----
-    Other published forms differ by 0.2 to 0.9 percent; one report uses one form.
+    For water near 60 F in turbulent flow (from memory). Other published forms differ by 0.2 to 0.9 percent; one
+    report uses one form.
 
     References
     ----------
@@ -78,9 +74,9 @@ def friction_loss(flow_gpm: Amount, c: Amount, diameter_in: Amount, law: Frictio
     >>> round(friction_loss(100, 120, 2.067), 6)
     0.09396
     """
-    flow, c_factor, diameter = _amounts(flow_gpm=flow_gpm), _above_zero(c=c), _above_zero(diameter_in=diameter_in)
+    flow, c_factor, diameter = not_negative(flow_gpm=flow_gpm), above_zero(c=c), above_zero(diameter_in=diameter_in)
     loss = law.coefficient * (flow / c_factor) ** law.flow_exponent / diameter**law.diameter_exponent
-    return _as_given(loss)
+    return as_given(loss)
 
 
 def sprinkler_flow(k: Amount, pressure_psi: Amount) -> Amount:
@@ -114,7 +110,7 @@ def sprinkler_flow(k: Amount, pressure_psi: Amount) -> Amount:
     >>> round(sprinkler_flow(5.6, 7), 3)
     14.816
     """
-    return _as_given(_above_zero(k=k) * np.sqrt(_amounts(pressure_psi=pressure_psi)))
+    return as_given(above_zero(k=k) * np.sqrt(not_negative(pressure_psi=pressure_psi)))
 
 
 def sprinkler_pressure(k: Amount, flow_gpm: Amount) -> Amount:
@@ -148,7 +144,7 @@ def sprinkler_pressure(k: Amount, flow_gpm: Amount) -> Amount:
     >>> round(sprinkler_pressure(5.6, 24), 1)
     18.4
     """
-    return _as_given((_amounts(flow_gpm=flow_gpm) / _above_zero(k=k)) ** 2)
+    return as_given((not_negative(flow_gpm=flow_gpm) / above_zero(k=k)) ** 2)
 
 
 def pitot_flow(coefficient: Amount, diameter_in: Amount, pitot_psi: Amount, outlet_factor: Amount = 1.0) -> Amount:
@@ -190,9 +186,9 @@ def pitot_flow(coefficient: Amount, diameter_in: Amount, pitot_psi: Amount, outl
     >>> round(pitot_flow(0.90, 2.5, 40))
     1061
     """
-    diameter = _above_zero(diameter_in=diameter_in)
-    share = _above_zero(coefficient=coefficient) * _above_zero(outlet_factor=outlet_factor)
-    return _as_given(PITOT_CONSTANT * share * diameter**2 * np.sqrt(_amounts(pitot_psi=pitot_psi)))
+    diameter = above_zero(diameter_in=diameter_in)
+    share = above_zero(coefficient=coefficient) * above_zero(outlet_factor=outlet_factor)
+    return as_given(PITOT_CONSTANT * share * diameter**2 * np.sqrt(not_negative(pitot_psi=pitot_psi)))
 
 
 def pumper_outlet_factor(pitot_psi: Amount) -> Amount:
@@ -215,14 +211,16 @@ def pumper_outlet_factor(pitot_psi: Amount) -> Amount:
 
     References
     ----------
-    NFPA 291, chapter 4: 0.83; the others from memory.
+    NFPA 291, chapter 4; data/outlets.toml says which were read.
 
     Examples
     --------
     >>> pumper_outlet_factor(10)
     0.83
     """
-    return _as_given(np.interp(_amounts(pitot_psi=pitot_psi), _PUMPER_PITOTS_PSI, _PUMPER_FACTORS))
+    rows = table("outlets")["pumper"]
+    pitots_psi, factors = [row["pitot_psi"] for row in rows], [row["factor"] for row in rows]
+    return as_given(np.interp(not_negative(pitot_psi=pitot_psi), pitots_psi, factors))
 
 
 def elevation_pressure(height_ft: Amount) -> Amount:
@@ -252,7 +250,7 @@ def elevation_pressure(height_ft: Amount) -> Amount:
     >>> round(elevation_pressure(23.1), 1)
     10.0
     """
-    return _as_given(PSI_PER_FOOT * _numbers(height_ft=height_ft))
+    return as_given(PSI_PER_FOOT * finite(height_ft=height_ft))
 
 
 def velocity(flow_gpm: Amount, diameter_in: Amount) -> Amount:
@@ -284,7 +282,7 @@ def velocity(flow_gpm: Amount, diameter_in: Amount) -> Amount:
     >>> round(velocity(10, 1.049), 2)
     3.71
     """
-    return _as_given(0.4085 * _amounts(flow_gpm=flow_gpm) / _above_zero(diameter_in=diameter_in) ** 2)
+    return as_given(0.4085 * not_negative(flow_gpm=flow_gpm) / above_zero(diameter_in=diameter_in) ** 2)
 
 
 def velocity_pressure(flow_gpm: Amount, diameter_in: Amount) -> Amount:
@@ -316,7 +314,7 @@ def velocity_pressure(flow_gpm: Amount, diameter_in: Amount) -> Amount:
     >>> round(velocity_pressure(100, 2.067), 3)
     0.615
     """
-    return _as_given(0.001123 * _amounts(flow_gpm=flow_gpm) ** 2 / _above_zero(diameter_in=diameter_in) ** 4)
+    return as_given(0.001123 * not_negative(flow_gpm=flow_gpm) ** 2 / above_zero(diameter_in=diameter_in) ** 4)
 
 
 def density_flow(density_gpm_per_ft2: Amount, area_ft2: Amount) -> Amount:
@@ -348,7 +346,7 @@ def density_flow(density_gpm_per_ft2: Amount, area_ft2: Amount) -> Amount:
     >>> round(density_flow(0.20, 120), 6)
     24.0
     """
-    return _as_given(_amounts(density_gpm_per_ft2=density_gpm_per_ft2) * _amounts(area_ft2=area_ft2))
+    return as_given(not_negative(density_gpm_per_ft2=density_gpm_per_ft2) * not_negative(area_ft2=area_ft2))
 
 
 def c_multiplier(c: Amount) -> Amount:
@@ -380,7 +378,7 @@ def c_multiplier(c: Amount) -> Amount:
     >>> round(c_multiplier(140), 2)
     1.33
     """
-    return _as_given((_above_zero(c=c) / 120) ** FLOW_EXPONENT)
+    return as_given((above_zero(c=c) / 120) ** FLOW_EXPONENT)
 
 
 def diameter_multiplier(actual_in: Amount, schedule_40_in: Amount) -> Amount:
@@ -414,7 +412,7 @@ def diameter_multiplier(actual_in: Amount, schedule_40_in: Amount) -> Amount:
     >>> round(diameter_multiplier(2.157, 2.067), 3)
     1.231
     """
-    return _as_given((_above_zero(actual_in=actual_in) / _above_zero(schedule_40_in=schedule_40_in)) ** 4.87)
+    return as_given((above_zero(actual_in=actual_in) / above_zero(schedule_40_in=schedule_40_in)) ** 4.87)
 
 
 def drain_index(static_psi: Amount, residual_psi: Amount, outlet_residual_psi: Amount | None = None) -> Amount:
@@ -451,29 +449,67 @@ def drain_index(static_psi: Amount, residual_psi: Amount, outlet_residual_psi: A
     0.31561
     """
     outlet = residual_psi if outlet_residual_psi is None else outlet_residual_psi
-    drop = _numbers(static_psi=static_psi) - _numbers(residual_psi=residual_psi)
-    return _as_given(drop / _above_zero(outlet_residual_psi=outlet) ** INDEX_EXPONENT)
+    drop = finite(static_psi=static_psi) - finite(residual_psi=residual_psi)
+    return as_given(drop / above_zero(outlet_residual_psi=outlet) ** INDEX_EXPONENT)
 
 
-def drain_k(diameter_in: float, length_ft: float, residual_psi: float, coefficient: float = 0.85) -> float:
+def drain_flow(k: Amount, residual_psi: Amount) -> Amount:
+    r"""Return the flow of an open main drain.
+
+    .. math:: Q_d = K_d \sqrt{R}
+
+    Parameters
+    ----------
+    k : Amount
+        K of the drain, above 0 [gpm/psi^0.5].
+    residual_psi : Amount
+        Residual at full flow, corrected to the drain's outlet, not negative [psi].
+
+    Returns
+    -------
+    Amount
+        Flow [gpm].
+
+    Raises
+    ------
+    OutOfRangeError
+        If an argument is outside its range or not a number.
+
+    Notes
+    -----
+    An estimate unless K was measured: friction in the drain follows the power 1.85, not 2.
+
+    References
+    ----------
+    DEVELOPERS.md, Method §4; the drain as an orifice.
+
+    Examples
+    --------
+    >>> round(drain_flow(42, 60), 1)
+    325.3
+    """
+    return as_given(above_zero(k=k) * np.sqrt(not_negative(residual_psi=residual_psi)))
+
+
+def drain_k(diameter_in: Amount, length_ft: Amount, residual_psi: Amount, coefficient: Amount = 0.85) -> Amount:
     r"""Return the K of a drain estimated from its pipe: outlet and friction share the residual.
 
     .. math:: R = \left(\frac{Q}{29.84 c d^2}\right)^2 + L \frac{4.52 Q^{1.85}}{120^{1.85} d^{4.87}}
 
     Parameters
     ----------
-    diameter_in : float
+    diameter_in : Amount
         Inside diameter of the drain pipe, above 0 [in].
-    length_ft : float
+    length_ft : Amount
         Equivalent length of the drain pipe, not negative [ft].
-    residual_psi : float
+    residual_psi : Amount
         Residual at full flow, above 0 [psi].
-    coefficient : float
-        Coefficient of the outlet [-].
+    coefficient : Amount
+        Coefficient of the outlet, above 0 [-].
 
     Returns
     -------
-    float
+    Amount
         K, an estimate [gpm/psi^0.5].
 
     Raises
@@ -490,16 +526,19 @@ def drain_k(diameter_in: float, length_ft: float, residual_psi: float, coefficie
     >>> round(drain_k(2.067, 20, 60) * 60**0.5)
     508
     """
-    _amounts(length_ft=length_ft)
-    outlet_k = 29.84 * float(_above_zero(coefficient=coefficient)) * float(_above_zero(diameter_in=diameter_in)) ** 2
-    most_gpm = outlet_k * float(_above_zero(residual_psi=residual_psi)) ** 0.5
+    residual = above_zero(residual_psi=residual_psi)
+    outlet_k = _OUTLET_CONSTANT * above_zero(coefficient=coefficient) * above_zero(diameter_in=diameter_in) ** 2
+    pipe_resistance = not_negative(length_ft=length_ft) * friction_loss(1.0, 120, diameter_in)
+    flow = np.vectorize(_flow_through_drain, otypes=[float])(outlet_k, pipe_resistance, residual)
+    return as_given(flow / np.sqrt(residual))
 
+
+def _flow_through_drain(outlet_k: float, pipe_resistance: float, residual_psi: float) -> float:
     def missing_psi(flow_gpm: float) -> float:
-        friction_psi = length_ft * float(friction_loss(flow_gpm, 120, diameter_in))
-        return float((flow_gpm / outlet_k) ** 2 + friction_psi - residual_psi)
+        return float((flow_gpm / outlet_k) ** 2 + pipe_resistance * flow_gpm**FLOW_EXPONENT - residual_psi)
 
-    flow_gpm = most_gpm if length_ft == 0 else brentq(missing_psi, 0.0, most_gpm, xtol=1e-9)
-    return float(flow_gpm / residual_psi**0.5)
+    more_than_outlet_gpm = 1.001 * outlet_k * residual_psi**0.5  # so that rounding leaves the root inside
+    return float(brentq(missing_psi, 0.0, more_than_outlet_gpm, xtol=1e-12, rtol=1e-14))
 
 
 def trip_pressure(water_psi: Amount, ratio: Amount) -> Amount:
@@ -531,29 +570,4 @@ def trip_pressure(water_psi: Amount, ratio: Amount) -> Amount:
     >>> round(trip_pressure(100, 5.5))
     18
     """
-    return _as_given(_amounts(water_psi=water_psi) / _above_zero(ratio=ratio))
-
-
-def _numbers(**named: ArrayLike) -> NDArray[np.float64]:
-    return _checked(named, np.isfinite, "give a finite number")
-
-
-def _amounts(**named: ArrayLike) -> NDArray[np.float64]:
-    return _checked(named, lambda value: np.isfinite(value) & (value >= 0), "give a number that is not negative")
-
-
-def _above_zero(**named: ArrayLike) -> NDArray[np.float64]:
-    return _checked(named, lambda value: np.isfinite(value) & (value > 0), "give a number above 0")
-
-
-def _checked(named: dict[str, ArrayLike], holds: Any, mend: str) -> NDArray[np.float64]:  # noqa: ANN401
-    ((name, given),) = named.items()
-    value = np.asarray(given, dtype=np.float64)
-    if not bool(np.all(holds(value))):
-        raise OutOfRangeError(f"{name}: {given!r} is outside the range of the formula; {mend}", name=name)
-    return value
-
-
-def _as_given(value: Any) -> Amount:  # noqa: ANN401
-    """Return a float for floats, the array for arrays."""
-    return float(value) if np.ndim(value) == 0 else value
+    return as_given(not_negative(water_psi=water_psi) / above_zero(ratio=ratio))

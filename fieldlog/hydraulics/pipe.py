@@ -2,15 +2,12 @@
 
 from __future__ import annotations
 
-import tomllib
 from collections.abc import Mapping
 from dataclasses import dataclass
-from functools import cache
-from importlib.resources import files
-from typing import Any
 
-from fieldlog.errors import OutOfRangeError
-from fieldlog.hydraulics.formulas import Amount, c_multiplier, diameter_multiplier, friction_loss
+from fieldlog.hydraulics.formulas import c_multiplier, diameter_multiplier, friction_loss
+from fieldlog.hydraulics.ranges import Amount, above_zero, not_negative
+from fieldlog.hydraulics.tables import cell, table
 
 
 @dataclass(frozen=True, slots=True)
@@ -38,9 +35,9 @@ class Pipe:
     nominal_in: str | None = None
 
     def __post_init__(self) -> None:
-        """Refuse a negative length."""
-        if not self.length_ft >= 0:
-            raise OutOfRangeError(f"length_ft: {self.length_ft} is no length; give a number that is not negative")
+        """Refuse a length, or a count of fittings, that can't be."""
+        not_negative(length_ft=self.length_ft)
+        not_negative(fittings=[count for _, count in self.fittings])
 
     def equivalent_length(self) -> float:
         """Return the length with that of the fittings, for this C and inside diameter, in ft."""
@@ -90,7 +87,8 @@ def inside_diameter(nominal_in: str, schedule: str) -> float:
     >>> inside_diameter("2", "40")
     2.067
     """
-    return float(_cell(_table("pipe")["inside_diameter_in"].get(schedule, {}), nominal_in, f"schedule {schedule}"))
+    column = cell(table("pipe")["inside_diameter"], schedule, "inside diameter by schedule")
+    return float(cell(column["inches"], nominal_in, f"schedule {schedule}"))
 
 
 def nearest_nominal(diameter_in: float) -> str:
@@ -106,6 +104,11 @@ def nearest_nominal(diameter_in: float) -> str:
     str
         Nominal size [in].
 
+    Raises
+    ------
+    OutOfRangeError
+        If the diameter is not above 0.
+
     References
     ----------
     data/pipe.toml.
@@ -115,7 +118,8 @@ def nearest_nominal(diameter_in: float) -> str:
     >>> nearest_nominal(4.26)
     '4'
     """
-    sizes: Mapping[str, float] = _table("pipe")["inside_diameter_in"]["40"]
+    above_zero(diameter_in=diameter_in)
+    sizes: Mapping[str, float] = table("pipe")["inside_diameter"]["40"]["inches"]
     return min(sizes, key=lambda nominal: abs(sizes[nominal] - diameter_in))
 
 
@@ -148,10 +152,8 @@ def fitting_length(name: str, nominal_in: str) -> float:
     >>> fitting_length("90 standard elbow", "4")
     10.0
     """
-    lengths: Mapping[str, Any] = _table("fittings")["equivalent_length_ft"]
-    if name not in lengths:
-        raise OutOfRangeError(f"fitting: {name!r} is not in the table; use one of {', '.join(sorted(lengths))}")
-    return float(_cell(lengths[name], nominal_in, name))
+    lengths = cell(table("fittings")["equivalent_length_ft"], name, "equivalent length")
+    return float(cell(lengths, nominal_in, name))
 
 
 def c_factor(pipe: str) -> float:
@@ -181,7 +183,7 @@ def c_factor(pipe: str) -> float:
     >>> c_factor("black steel, wet or deluge")
     120.0
     """
-    return float(_cell(_table("pipe")["c_factor"], pipe, "C-factor")["c"])
+    return float(cell(table("pipe")["c_factor"], pipe, "C-factor")["c"])
 
 
 def nominal_k(k: float) -> float | None:
@@ -206,7 +208,7 @@ def nominal_k(k: float) -> float | None:
     >>> nominal_k(5.62)
     5.6
     """
-    rows = _table("nominal_k")["k"]
+    rows = table("nominal_k")["k"]
     return next((float(row["nominal"]) for row in rows if row["least"] <= k <= row["most"]), None)
 
 
@@ -223,6 +225,11 @@ def main_drain_size(riser_in: float) -> str:
     str
         Nominal size of the drain connection [in].
 
+    Raises
+    ------
+    OutOfRangeError
+        If the size is not above 0.
+
     References
     ----------
     NFPA 13, table of drain sizes, from memory.
@@ -232,16 +239,6 @@ def main_drain_size(riser_in: float) -> str:
     >>> main_drain_size(3)
     '1-1/4'
     """
-    rows = _table("pipe")["main_drain"]
+    above_zero(riser_in=riser_in)
+    rows = table("pipe")["main_drain"]
     return str(next(row["drain"] for row in rows if riser_in <= row.get("riser_up_to", float("inf"))))
-
-
-@cache
-def _table(name: str) -> Mapping[str, Any]:
-    return tomllib.loads(files("fieldlog.hydraulics.data").joinpath(f"{name}.toml").read_text(encoding="utf-8"))
-
-
-def _cell(row: Mapping[str, Any], key: str, what: str) -> Any:  # noqa: ANN401  a number or a small table
-    if key in row:
-        return row[key]
-    raise OutOfRangeError(f"{what}: no value for {key!r}; known: {', '.join(row) or 'none'}")

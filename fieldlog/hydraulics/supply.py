@@ -15,27 +15,41 @@ from numpy.typing import NDArray
 from scipy.optimize import brentq
 
 from fieldlog.errors import OutOfRangeError
-from fieldlog.hydraulics.formulas import FLOW_EXPONENT, Amount, elevation_pressure
+from fieldlog.hydraulics.formulas import FLOW_EXPONENT, elevation_pressure
 from fieldlog.hydraulics.pipe import Pipe
+from fieldlog.hydraulics.ranges import Amount, as_given, finite, not_negative
 
 _INVERSE = 1 / FLOW_EXPONENT  # never 0.54, so that flow_at undoes pressure_at
 
 
 @dataclass(frozen=True, slots=True)
 class LossCurve:
-    """A listed loss by points (gpm, psi), interpolated from 0 at no flow; unknown beyond the last point."""
+    """A listed loss by points (gpm, psi), interpolated; unknown beyond the last point.
+
+    Without a point at no flow it begins at no loss there.
+    """
 
     points: tuple[tuple[float, float], ...]
 
     def __post_init__(self) -> None:
-        """Refuse no points, or one that is no number."""
-        if not (self.points and np.all(np.isfinite(self.points))):
-            raise OutOfRangeError(f"listed loss: {self.points}; give one point or more in finite numbers")
+        """Refuse no points, two at one flow, or one that is no amount."""
+        flows, is_amount = {flow for flow, _ in self.points}, np.isfinite(self.points) & (np.asarray(self.points) >= 0)
+        if not (flows and np.all(is_amount) and len(flows) == len(set(self.points))):
+            raise OutOfRangeError(
+                f"listed loss: {self.points}; give one point or more, one at each flow, in finite numbers from 0 up"
+            )
+
+    @property
+    def last_gpm(self) -> float:
+        """The flow beyond which the loss is unknown, in gpm."""
+        return max(flow for flow, _ in self.points)
 
     def loss(self, flow_gpm: Amount) -> Amount:
         """Return the loss at a flow, in psi; not a number beyond the last point."""
-        flows, losses = np.array(sorted({(0.0, 0.0), *self.points})).T
-        return _as_given(np.interp(np.asarray(flow_gpm, dtype=float), flows, losses, right=np.nan))
+        by_flow = {0.0: 0.0} | dict(self.points)
+        flows = sorted(by_flow)
+        losses = [by_flow[flow] for flow in flows]
+        return as_given(np.interp(not_negative(flow_gpm=flow_gpm), flows, losses, right=np.nan))
 
 
 @dataclass(frozen=True, slots=True)
@@ -135,31 +149,32 @@ class SupplyCurve:
         return cls(float(static_psi), float(x @ (static_psi - residuals) / (x @ x)))
 
     def available(self, flow_gpm: Amount, outside_hose_gpm: Amount) -> Amount:
-        """Return the pressure at a system flow while hose draws upstream, in psi."""
-        flow, hose = np.asarray(flow_gpm, dtype=float), np.asarray(outside_hose_gpm, dtype=float)
-        if not all(np.all((amount >= 0) & (amount < np.inf)) for amount in (flow, hose)):
-            raise OutOfRangeError(
-                f"flow: {flow_gpm} gpm and hose {outside_hose_gpm} gpm; give finite numbers that are not negative"
-            )
+        """Return the pressure at a system flow while hose draws upstream, in psi.
+
+        Not a number where a listed loss is unknown.
+        """
+        flow, hose = not_negative(flow_gpm=flow_gpm), not_negative(outside_hose_gpm=outside_hose_gpm)
         pressure = self.static_psi - self.a_source * (flow + hose) ** FLOW_EXPONENT
         pressure = pressure - self.a_path * flow**FLOW_EXPONENT - sum(curve.loss(flow) for curve in self.losses)
-        return _as_given(pressure)
+        return as_given(pressure)
 
     def pressure_at(self, flow_gpm: Amount) -> Amount:
         """Return the pressure at a flow without hose, in psi."""
         return self.available(flow_gpm, 0.0)
 
     def flow_at(self, pressure_psi: Amount) -> Amount:
-        """Return the flow at which a pressure is left, in gpm; 0 at or above the static.
+        """Return the flow at which a pressure is left, in gpm; 0 at or above what is there at no flow.
 
-        Not a number where a listed loss ends before that flow.
+        The largest such flow, since a listed loss may fall before it rises. Not a number where a listed loss ends
+        before it; without end where nothing resists.
         """
-        pressure = _finite_pressure(pressure_psi)
-        if not self.losses:
-            drop = np.maximum(self.static_psi - pressure, 0.0)
-            with np.errstate(divide="ignore", invalid="ignore"):
-                return _as_given((drop / (self.a_source + self.a_path)) ** _INVERSE)
-        return _as_given(np.vectorize(self._flow_with_losses, otypes=[float])(pressure))
+        pressure = finite(pressure_psi=pressure_psi)
+        if self.losses:
+            return as_given(np.vectorize(self._flow_behind_losses, otypes=[float])(pressure))
+        drop = np.maximum(self.static_psi - pressure, 0.0)
+        with np.errstate(divide="ignore", invalid="ignore"):
+            flow = (drop / (self.a_source + self.a_path)) ** _INVERSE
+        return as_given(np.where(drop > 0, flow, 0.0))
 
     def at_elevation(self, rise_ft: float) -> SupplyCurve:
         """Return the curve at a point higher by `rise_ft`: up lowers."""
@@ -173,13 +188,26 @@ class SupplyCurve:
         """Return the curve behind a device with a listed loss."""
         return replace(self, losses=(*self.losses, curve))
 
-    def _flow_with_losses(self, pressure_psi: float) -> float:
-        if pressure_psi >= self.static_psi:
+    def _flow_behind_losses(self, pressure_psi: float) -> float:
+        turns = self._turns_gpm()
+        has_it = np.flatnonzero(self.pressure_at(turns) >= pressure_psi)
+        if not has_it.size:
             return 0.0
-        last_gpm = min(max(flow for flow, _ in curve.points) for curve in self.losses)
-        if not self.pressure_at(last_gpm) <= pressure_psi:
-            return float("nan")
-        return float(brentq(lambda flow: self.pressure_at(flow) - pressure_psi, 0.0, last_gpm, xtol=1e-10, rtol=1e-14))
+        last = has_it[-1]
+        if last == turns.size - 1:
+            return float(turns[last]) if self.pressure_at(turns[last]) == pressure_psi else float("nan")
+        ends = turns[last], turns[last + 1]
+        return float(brentq(lambda flow: self.pressure_at(flow) - pressure_psi, *ends, xtol=1e-10, rtol=1e-14))
+
+    def _turns_gpm(self) -> NDArray[np.float64]:
+        """Return the known flows between which the pressure only rises or only falls, the last one included."""
+        last_gpm = min(curve.last_gpm for curve in self.losses)
+        listed = {flow for curve in self.losses for flow, _ in curve.points if flow < last_gpm}
+        flows = np.array(sorted({0.0, last_gpm} | listed))
+        falls = np.maximum(-np.diff(sum(curve.loss(flows) for curve in self.losses)) / np.diff(flows), 0.0)
+        with np.errstate(divide="ignore", invalid="ignore"):  # no resistance, no peak between two listed points
+            peaks = (falls / (FLOW_EXPONENT * (self.a_source + self.a_path))) ** (1 / (FLOW_EXPONENT - 1))
+        return np.unique(np.concatenate([flows, peaks[(flows[:-1] < peaks) & (peaks < flows[1:])]]))
 
 
 @dataclass(frozen=True, slots=True)
@@ -189,28 +217,28 @@ class PointCurve:
     points: tuple[tuple[float, float], ...]
 
     def __post_init__(self) -> None:
-        """Refuse fewer than two points, two at one flow, or one that is no number."""
+        """Refuse fewer than two points, two at one flow, a negative flow, or a point that is no number."""
         flows = [flow for flow, _ in self.points]
-        if len(flows) < 2 or len(set(flows)) < len(flows) or not np.all(np.isfinite(self.points)):
+        if len(flows) < 2 or len(set(flows)) < len(flows) or not (np.all(np.isfinite(self.points)) and min(flows) >= 0):
             raise OutOfRangeError(
-                f"stated points: {self.points}; give two or more in finite numbers, each at its own flow"
+                f"stated points: {self.points}; give two or more in finite numbers, each at its own flow from 0 up"
             )
 
     def pressure_at(self, flow_gpm: Amount) -> Amount:
         """Return the pressure at a flow, in psi; not a number (unproven) outside the stated flows."""
         flows, pressures = self._sorted()
-        return _as_given(np.interp(np.asarray(flow_gpm, dtype=float), flows, pressures, left=np.nan, right=np.nan))
+        return as_given(np.interp(not_negative(flow_gpm=flow_gpm), flows, pressures, left=np.nan, right=np.nan))
 
     def available(self, flow_gpm: Amount, outside_hose_gpm: Amount) -> Amount:
         """Return the pressure at system flow and hose together, in psi: all of it passes the pump."""
-        return self.pressure_at(np.asarray(flow_gpm, dtype=float) + np.asarray(outside_hose_gpm, dtype=float))
+        return self.pressure_at(not_negative(flow_gpm=flow_gpm) + not_negative(outside_hose_gpm=outside_hose_gpm))
 
     def flow_at(self, pressure_psi: Amount) -> Amount:
         """Return the flow at which the pressure is left, in gpm; not a number where none is stated.
 
         The largest one: a pump's curve may rise before it falls.
         """
-        return _as_given(np.vectorize(self._largest_flow, otypes=[float])(_finite_pressure(pressure_psi)))
+        return as_given(np.vectorize(self._largest_flow, otypes=[float])(finite(pressure_psi=pressure_psi)))
 
     def at_elevation(self, rise_ft: float) -> PointCurve:
         """Return the curve at a point higher by `rise_ft`: up lowers."""
@@ -269,12 +297,34 @@ def drop_fraction(static_psi: float, residual_psi: float) -> float:
     return (static_psi - residual_psi) / static_psi
 
 
-def _as_given(value: NDArray[np.float64]) -> Amount:
-    return float(value) if np.ndim(value) == 0 else value
+def is_extrapolated(flow_gpm: Amount, tested_gpm: float) -> Amount:
+    """Return whether a flow lies beyond the largest flow tested, where a curve is drawn and not measured.
 
+    Parameters
+    ----------
+    flow_gpm : Amount
+        Flow with the hose that passes the same main, not negative [gpm].
+    tested_gpm : float
+        Largest flow of the flow test, not negative [gpm].
 
-def _finite_pressure(pressure_psi: Amount) -> NDArray[np.float64]:
-    pressure = np.asarray(pressure_psi, dtype=np.float64)
-    if not np.all(np.isfinite(pressure)):
-        raise OutOfRangeError(f"pressure_psi: {pressure_psi} is no finite number; give a pressure", name="pressure_psi")
-    return pressure
+    Returns
+    -------
+    Amount
+        True or false; an array of them for an array [-].
+
+    Raises
+    ------
+    OutOfRangeError
+        If an argument is negative or not a number.
+
+    References
+    ----------
+    Common practice; our own limit, no standard's.
+
+    Examples
+    --------
+    >>> is_extrapolated(1500, 1240)
+    True
+    """
+    beyond = not_negative(flow_gpm=flow_gpm) > not_negative(tested_gpm=tested_gpm)
+    return bool(beyond) if np.ndim(beyond) == 0 else beyond

@@ -52,7 +52,13 @@ def test_pipe_without_fittings_is_as_long_as_it_is() -> None:
     assert Pipe(length_ft=87.0, diameter_in=4.5, c=110.0).equivalent_length() == 87.0
 
 
-@pytest.mark.parametrize("length_ft", [-0.5, math.nan])
+@pytest.mark.parametrize("count", [-2, math.nan])
+def test_fewer_fittings_than_none_are_refused(count: float) -> None:
+    with pytest.raises(OutOfRangeError, match="fittings"):
+        Pipe(length_ft=45.0, diameter_in=4.026, c=120.0, fittings=(("gate valve", 3), ("45 elbow", count)))  # type: ignore[arg-type]
+
+
+@pytest.mark.parametrize("length_ft", [-0.5, math.nan, math.inf])
 def test_what_is_no_length_is_refused(length_ft: float) -> None:
     with pytest.raises(OutOfRangeError, match="length_ft"):
         Pipe(length_ft=length_ft, diameter_in=4.026, c=120.0)

@@ -12,7 +12,7 @@ from hypothesis import strategies as st
 
 from fieldlog.errors import OutOfRangeError
 from fieldlog.hydraulics.pipe import Pipe
-from fieldlog.hydraulics.supply import LossCurve, PointCurve, SupplyCurve, drop_fraction
+from fieldlog.hydraulics.supply import LossCurve, PointCurve, SupplyCurve, drop_fraction, is_extrapolated
 
 TESTED = SupplyCurve.from_flow_test(static_psi=83.0, residual_psi=61.0, flow_gpm=1240.0)
 LEAD_IN = Pipe(length_ft=135.0, diameter_in=6.09, c=140.0, fittings=(("90 standard elbow", 2), ("gate valve", 1)))
@@ -119,6 +119,49 @@ def test_no_flow_is_left_at_the_static_or_above() -> None:
         assert curve.flow_at(97.0) == 0.0
 
 
+def test_where_nothing_resists_no_flow_is_left_above_the_static_and_any_below() -> None:
+    tank = SupplyCurve(static_psi=43.0, a_source=0.0)
+    assert tank.flow_at(43.0) == tank.flow_at(47.0) == 0.0
+    assert math.isinf(tank.flow_at(42.0))
+
+
+def test_a_device_that_takes_pressure_before_water_moves_leaves_no_flow_above_the_rest() -> None:
+    # Stated from 6 psi at no flow: 77 psi are left there, under the static of 83.
+    behind = TESTED.with_loss(LossCurve(points=((0.0, 6.0), (800.0, 9.0))))
+    assert behind.pressure_at(0.0) == 77.0
+    assert behind.flow_at(np.array([83.0, 79.5, 77.0])).tolist() == [0.0, 0.0, 0.0]
+    assert behind.flow_at(behind.pressure_at(330.0)) == pytest.approx(330.0, rel=1e-9)
+
+
+# As of a backflow preventer: much at little flow, then less, then more again.
+DIPPING = LossCurve(points=((60.0, 12.0), (300.0, 4.0), (1100.0, 13.0)))
+
+
+@given(pressure_psi=st.floats(50, 95))
+def test_behind_a_loss_that_dips_the_flow_is_the_largest_with_that_pressure(pressure_psi: float) -> None:
+    behind = TESTED.with_loss(DIPPING)
+    flows = np.linspace(0.0, 1100.0, 4401)
+    has_it = flows[behind.pressure_at(flows) >= pressure_psi]
+    found = behind.flow_at(pressure_psi)
+    if behind.pressure_at(1100.0) > pressure_psi:
+        assert math.isnan(found)
+    elif not has_it.size:
+        assert found == 0.0
+    else:
+        assert has_it[-1] - 1e-6 <= found <= has_it[-1] + 0.25 + 1e-6
+
+
+def test_a_peak_of_pressure_between_two_listed_points_is_found() -> None:
+    # a Q^1.85 against a loss that falls by 0.02 psi/gpm: highest where 1.85 a Q^0.85 is 0.02.
+    curve = SupplyCurve(80.0, 2e-5, 4e-5).with_loss(LossCurve(points=((0.0, 25.0), (1200.0, 1.0))))
+    peak_gpm = (0.02 / (1.85 * 6e-5)) ** (1 / 0.85)
+    assert 300 < peak_gpm < 1100
+    top_psi = curve.pressure_at(peak_gpm)
+    assert top_psi > max(curve.pressure_at(0.0), curve.pressure_at(1200.0)) + 1
+    assert peak_gpm < curve.flow_at(top_psi - 0.5) < 1200
+    assert curve.flow_at(top_psi + 0.5) == 0.0
+
+
 def test_a_listed_loss_is_interpolated_from_nothing_and_unknown_beyond_its_last_point() -> None:
     assert LISTED.loss(125.0) == pytest.approx(3.0)
     assert LISTED.loss(900.0) == pytest.approx(9.5)
@@ -127,6 +170,7 @@ def test_a_listed_loss_is_interpolated_from_nothing_and_unknown_beyond_its_last_
     behind = TESTED.with_loss(LISTED)
     assert behind.pressure_at(1200.0) == pytest.approx(TESTED.pressure_at(1200.0) - 11.75, abs=1e-9)
     assert math.isnan(behind.pressure_at(1600.0))
+    assert behind.flow_at(behind.pressure_at(1500.0)) == 1500.0
     assert math.isnan(behind.flow_at(behind.pressure_at(1500.0) - 2.0))
 
 
@@ -161,15 +205,25 @@ def test_hose_behind_a_pump_passes_the_pump() -> None:
     assert math.isnan(PUMP.available(1300.0, 250.0))
 
 
-@pytest.mark.parametrize("points", [((700.0, math.nan),), ()])
-def test_a_listed_loss_needs_a_point_in_numbers(points: tuple[tuple[float, float], ...]) -> None:
+@pytest.mark.parametrize(
+    "points", [((700.0, math.nan),), (), ((-60.0, 4.0),), ((60.0, -4.0),), ((60.0, 4.0), (60.0, 5.0), (90.0, 7.0))]
+)
+def test_a_listed_loss_needs_points_in_numbers_from_0_up_one_at_each_flow(
+    points: tuple[tuple[float, float], ...],
+) -> None:
     with pytest.raises(OutOfRangeError, match="listed loss"):
         LossCurve(points=points)
 
 
 @pytest.mark.parametrize(
     "points",
-    [((700.0, 90.0),), ((700.0, 90.0), (700.0, 81.0), (900.0, 66.0)), (), ((700.0, math.nan), (900.0, 66.0))],
+    [
+        ((700.0, 90.0),),
+        ((700.0, 90.0), (700.0, 81.0), (900.0, 66.0)),
+        (),
+        ((700.0, math.nan), (900.0, 66.0)),
+        ((-700.0, 90.0), (900.0, 66.0)),
+    ],
 )
 def test_stated_points_need_two_different_flows(points: tuple[tuple[float, float], ...]) -> None:
     with pytest.raises(OutOfRangeError, match="stated points"):
@@ -213,9 +267,24 @@ def test_a_resistance_below_nothing_gives_no_curve(field: str, wrong: float) -> 
 
 @pytest.mark.parametrize("wrong", [-30.0, math.nan, math.inf])
 def test_a_flow_or_hose_that_is_no_amount_is_refused(wrong: float) -> None:
-    for call in (lambda: TESTED.available(wrong, 250.0), lambda: TESTED.available(400.0, wrong)):
-        with pytest.raises(OutOfRangeError, match="give finite numbers"):
-            call()
+    for curve in (TESTED, TESTED.with_loss(LISTED), PUMP):
+        with pytest.raises(OutOfRangeError, match="flow_gpm: "):
+            curve.available(wrong, 250.0)
+        with pytest.raises(OutOfRangeError, match="outside_hose_gpm: "):
+            curve.available(400.0, wrong)
+        with pytest.raises(OutOfRangeError, match="flow_gpm: "):
+            curve.pressure_at(np.array([400.0, wrong]))
+    with pytest.raises(OutOfRangeError, match="flow_gpm: "):
+        LISTED.loss(wrong)
+
+
+def test_a_flow_beyond_the_tested_one_is_extrapolated() -> None:
+    assert is_extrapolated(1240.5, 1240.0) is True
+    assert is_extrapolated(1240.0, 1240.0) is False
+    assert is_extrapolated(np.array([900.0, 1300.0]), 1240.0).tolist() == [False, True]
+    for flow_gpm, tested_gpm in ((math.nan, 1240.0), (900.0, math.nan), (-900.0, 1240.0)):
+        with pytest.raises(OutOfRangeError, match="_gpm: "):
+            is_extrapolated(flow_gpm, tested_gpm)
 
 
 def test_a_drop_is_a_share_of_the_static() -> None:

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-import tomllib
+from collections.abc import Callable, Iterator
 from importlib.resources import files
 from typing import Any
 
@@ -17,6 +17,7 @@ from fieldlog.hydraulics.pipe import (
     nearest_nominal,
     nominal_k,
 )
+from fieldlog.hydraulics.tables import table
 from fieldlog.units import Discharge
 
 SIZES = ("1/2", "3/4", "1", "1-1/4", "1-1/2", "2", "2-1/2", "3", "3-1/2", "4", "5", "6", "8", "10", "12")
@@ -61,10 +62,6 @@ C_FACTORS = {
 }
 
 
-def table(name: str) -> dict[str, Any]:
-    return tomllib.loads(files("fieldlog.hydraulics.data").joinpath(f"{name}.toml").read_text(encoding="utf-8"))
-
-
 def cells(rows: dict[str, str]) -> list[tuple[str, str, str]]:
     return [(row, size, cell) for row, text in rows.items() for size, cell in zip(SIZES, text.split(), strict=True)]
 
@@ -89,14 +86,14 @@ def test_an_equivalent_length_is_as_printed(fitting: str, size: str, printed: st
 
 def test_the_tables_hold_nothing_more() -> None:
     assert set(table("fittings")["equivalent_length_ft"]) == set(FITTINGS)
-    diameters = table("pipe")["inside_diameter_in"]
-    assert set(diameters) - {"source", "read"} == set(DIAMETERS)
-    assert all(set(diameters[schedule]) <= set(SIZES) for schedule in DIAMETERS)
+    diameters = table("pipe")["inside_diameter"]
+    assert set(diameters) == set(DIAMETERS)
+    assert all(set(diameters[schedule]["inches"]) <= set(SIZES) for schedule in DIAMETERS)
     assert set(table("pipe")["c_factor"]) == set(C_FACTORS)
     assert len(table("nominal_k")["k"]) == len(NOMINAL_K)
 
 
-@pytest.mark.parametrize(("size", "walls"), table("pipe")["wall_40_in"].items())
+@pytest.mark.parametrize(("size", "walls"), table("pipe")["wall_40"]["inches"].items())
 def test_schedule_40_is_the_outside_less_two_walls(size: str, walls: dict[str, float]) -> None:
     assert inside_diameter(size, "40") == pytest.approx(walls["outside"] - 2 * walls["wall"], abs=1e-9)
 
@@ -122,11 +119,46 @@ def test_a_c_factor_is_as_reproduced(pipe: str, c: int) -> None:
     assert c_factor(pipe) == c
 
 
-@pytest.mark.parametrize("pipe", C_FACTORS)
-def test_every_c_factor_says_where_it_comes_from(pipe: str) -> None:
-    row = table("pipe")["c_factor"][pipe]
-    assert row["source"]
-    assert row["read"] in {"verified", "verified-2nd", "from memory"}
+def numbers_with_marks(part: Any, marks: tuple[Any, Any], where: str) -> Iterator[tuple[str, Any, Any]]:
+    """Every number of a table with the nearest `source` and `read` at or above it."""
+    if isinstance(part, dict):
+        marks = (part.get("source", marks[0]), part.get("read", marks[1]))
+        for name, inner in part.items():
+            yield from numbers_with_marks(inner, marks, f"{where}.{name}")
+    elif isinstance(part, list):
+        for place, inner in enumerate(part):
+            yield from numbers_with_marks(inner, marks, f"{where}[{place}]")
+    elif not isinstance(part, str):
+        yield where, *marks
+
+
+@pytest.mark.parametrize("name", [path.name for path in files("fieldlog.hydraulics.data").iterdir()])
+def test_every_number_says_where_it_comes_from_and_how_that_was_read(name: str) -> None:
+    stem, _, kind = name.partition(".")
+    if kind != "toml":
+        return
+    marked = list(numbers_with_marks(table(stem), (None, None), stem))
+    assert len(marked) > 5
+    assert [where for where, source, _ in marked if not source] == []
+    assert {read for _, _, read in marked} <= {"verified", "verified-2nd", "derived", "from memory"}
+
+
+def test_sizes_marked_as_from_memory_are_in_their_column() -> None:
+    column = table("pipe")["inside_diameter"]["10"]
+    assert set(column["from_memory"]) == {"3/4", "8", "10"} <= set(column["inches"])
+
+
+@pytest.mark.parametrize("schedule", ["80", "source", "read"])
+def test_a_schedule_that_no_table_has_is_refused_with_the_known_ones(schedule: str) -> None:
+    with pytest.raises(OutOfRangeError, match="known: 40, 10, 10S, STD"):
+        inside_diameter("2", schedule)
+
+
+@pytest.mark.parametrize("look_up", [nearest_nominal, main_drain_size])
+@pytest.mark.parametrize("size_in", [-3.0, 0.0, float("nan"), float("inf")])
+def test_a_size_that_can_not_be_is_refused(look_up: Callable[[float], str], size_in: float) -> None:
+    with pytest.raises(OutOfRangeError, match="_in: "):
+        look_up(size_in)
 
 
 # NFPA 13, table of drain sizes, from memory.

@@ -6,6 +6,7 @@ from fieldlog.hydraulics.formulas import (
     PITOT_CONSTANT,
     FrictionLaw,
     density_flow,
+    drain_flow,
     drain_k,
     elevation_pressure,
     friction_loss,
@@ -64,5 +65,5 @@ def metric_friction_loss(flow_gpm: float, c: float, diameter_in: float) -> float
     return friction_loss(flow_in(flow_gpm, "L/min"), c, MM_PER_INCH * diameter_in, law=METRIC_FORM)
 
 
-def drain_flow(diameter_in: float, length_ft: float, residual_psi: float) -> float:
-    return drain_k(diameter_in, length_ft, residual_psi) * residual_psi**0.5
+def estimated_drain_flow(diameter_in: float, length_ft: float, residual_psi: float) -> float:
+    return drain_flow(drain_k(diameter_in, length_ft, residual_psi), residual_psi)
