@@ -11,7 +11,7 @@ from fieldlog.demo import registry, scenario
 from fieldlog.demo.events import write_events, write_open_ends
 from fieldlog.demo.pen import ORGANISATION, Pen, uid_of
 from fieldlog.demo.plan import YEARS, SitePlan
-from fieldlog.demo.visits import attendances, write_visit
+from fieldlog.demo.visits import attendances, write_rounds_after, write_visit
 from fieldlog.errors import ConflictError
 from fieldlog.procedures.organisation import Organisation
 from fieldlog.records.entries import Arrival, Via
@@ -44,14 +44,18 @@ class DemoOutcome:
     head: str
     expected: tuple[Expectation, ...]
 
-    def lines(self) -> Iterator[str]:
+    def lines(self) -> list[str]:
         """Return what to tell the one who asked for it."""
-        yield f"instance: {self.folder}"
-        yield f"log: {self.entries} entries, head {self.head}"
-        yield f"sealed report: {self.report}"
-        yield f"statements on {self.systems} systems: FIELDLOG_INSTANCE={self.folder} fieldlog statement"
-        yield f"check the report: FIELDLOG_INSTANCE={self.folder} fieldlog verify {self.report}"
-        yield "Every site, person and reading in it is invented."
+        return [
+            f"instance: {self.folder}",
+            f"log: {self.entries} entries, head {self.head}",
+            f"sealed report: {self.report}",
+            f"statements on {self.systems} systems: FIELDLOG_INSTANCE={self.folder} fieldlog statement",
+            f"check the report: FIELDLOG_INSTANCE={self.folder} fieldlog verify {self.report}",
+            "By how the scenario was made, these should be said:",
+            *(f"  {one.site} · {one.system} · {one.statement}" for one in self.expected),
+            "Every site, person and reading in it is invented.",
+        ]
 
 
 def steps(as_of: date) -> int:
@@ -102,6 +106,8 @@ def batches(as_of: date) -> Iterator[tuple[Via, list[Arrival]]]:
             write_visit(pen, visit)
             if visit.back == 0:
                 write_open_ends(pen, site, as_of)
+            else:
+                write_rounds_after(pen, visit)
             yield "form" if visit.back == 0 else "import", pen.taken()
 
 

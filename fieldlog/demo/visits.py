@@ -18,6 +18,7 @@ from fieldlog.procedures.sign_off import Covered, Signer, SignOff
 from fieldlog.procedures.visit import NotDone, Visit
 
 _DAYS_OF_YEAR = 365.25
+_ROUNDS_A_YEAR = 4  # of all gauges of a site
 _WITH_ALARM_TEST = {"wet", "dry", "preaction"}
 _WEATHER = ("dry", "overcast", "light rain", "windy")
 _TECHNICIANS = {"technician-a": ("Technician A", "DEMO-1"), "technician-b": ("Technician B", "DEMO-2")}
@@ -81,6 +82,16 @@ def write_visit(pen: Pen, visit: Attendance) -> None:
         "visit", f"{visit.key}/closed", closed, visit.on, author=visit.author, **visit.place,
         subject=uid_of(visit.key), based_on=opened.uid, reason="closed by its sign-off",
     )  # fmt: skip
+
+
+def write_rounds_after(pen: Pen, visit: Attendance) -> None:
+    """Write the readings between a visit and the next, so that every gauge is read each quarter."""
+    for quarter in range(1, _ROUNDS_A_YEAR // visit.site.visits_a_year):
+        on = visit.on + timedelta(days=round(_DAYS_OF_YEAR * quarter / _ROUNDS_A_YEAR))
+        occasion = f"{visit.key}/{quarter}"
+        days = [rounds.round_of(visit.site, system, on, occasion) for system in visit.site.systems]
+        body = rounds.gauge_readings(days)
+        pen.write("gauge_reading", f"{occasion}/gauges", body, on, author=visit.author, **visit.place)
 
 
 def _open(visit: Attendance) -> Visit:

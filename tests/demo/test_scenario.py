@@ -7,6 +7,7 @@ import re
 from collections.abc import Iterator
 from datetime import date
 from functools import cache
+from itertools import pairwise
 from typing import Any
 
 import pytest
@@ -170,6 +171,25 @@ def test_a_site_was_visited_over_ten_years_up_to_a_few_months_ago(site: Any) -> 
     assert (days[-1] - days[0]).days == pytest.approx(3652, abs=2)
     assert 0 < (AS_OF - days[-1]).days < 200
     assert len(visits) == 10 * site.visits_a_year + 1
+
+
+@pytest.mark.parametrize("site", scenario.sites(AS_OF), ids=lambda site: site.key)
+def test_the_gauges_of_a_site_are_read_every_quarter_for_ten_years(site: Any) -> None:
+    here = [one for one in entries() if one.envelope.site == uid_of(site.key)]
+    read: list[Any] = [one.body for one in here if one.envelope.kind == "gauge_reading"]
+    days = [body.performed_on for body in read]
+    gaps = {(after - day).days for day, after in pairwise(days)}
+    assert gaps <= {90, 91, 92}
+    assert len(days) == 10 * 4 + 1
+    assert all(len(body.readings) == len(site.systems) for body in read)
+
+
+def test_rounds_between_visits_belong_to_no_visit_and_no_sign_off() -> None:
+    between = {
+        one.envelope.uid for one in entries() if one.envelope.kind == "gauge_reading" and one.envelope.visit is None
+    }
+    assert len(between) == 20 * 6  # of the sites visited twice a year
+    assert not between & {covered.uid for body in bodies("sign_off") for covered in body.covers}
 
 
 def test_corrections_name_what_they_replace_and_why() -> None:

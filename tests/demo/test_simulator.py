@@ -27,7 +27,7 @@ STEADY = TrueSupply(81.0, resistance_of(13.0, 600), season_psi=0.0, day_psi=0.0)
 
 def index_of(static_psi: float, residual_psi: float) -> float:
     """The drain index, computed apart: DEVELOPERS.md, Method §4."""
-    return (static_psi - residual_psi) / residual_psi**0.925
+    return float((static_psi - residual_psi) / residual_psi**0.925)
 
 
 def days_of_a_year() -> list[date]:

@@ -97,6 +97,12 @@ def test_the_outcome_names_what_was_made(built: tuple[Instance, DemoOutcome, int
     assert all(part in told for part in (outcome.folder, outcome.report, outcome.head, "invented"))
 
 
+def test_the_outcome_tells_of_each_system_what_should_be_said(built: tuple[Instance, DemoOutcome, int]) -> None:
+    told = {line.strip() for line in built[1].lines() if " · " in line}
+    rows = sites.system_rows(built[0], DAYS[0])
+    assert told == {f"{row.site.body['name']} · {row.system.body['name']} · {row.said.statement}" for row in rows}
+
+
 def test_the_report_of_the_last_visit_is_sealed_and_equal_to_the_log(
     built: tuple[Instance, DemoOutcome, int],
 ) -> None:
